@@ -93,7 +93,7 @@ class Tree:
             if seen >= k:
                 return row
             seen += not self._lines[row].strip()
-        return line
+        return min(line, len(self._lines) - 1)
 
     def _find(self, path: Steps) -> tuple[_Spot, tuple[int, int]]:
         spot = self._root
@@ -131,7 +131,7 @@ def parse_tree(text: str, path: str) -> Tree:
         builder.run(_Loader(text))
     except yaml.MarkedYAMLError as error:
         line, column, words = syntax_place_and_words(error, lines)
-        builder.complain("yaml-syntax", words, line, column)
+        builder.complain("yaml-depth" if "too deeply" in words else "yaml-syntax", words, line, column)
     except RecursionError:
         builder.too_deep(0, 0)
     if builder.faults:
@@ -140,7 +140,9 @@ def parse_tree(text: str, path: str) -> Tree:
 
 
 def _source(path: str, lines: Sequence[str], line: int, column: int) -> Source:
-    return Source(path, line + 1, column + 1, lines[line] if line < len(lines) else "")
+    # The parser puts what is missing at the end of the text behind the last line.
+    row = min(line, len(lines) - 1)
+    return Source(path, row + 1, column + 1 if row == line else len(lines[row]) + 1, lines[row])
 
 
 def _indent(lines: Sequence[str], header: int, last: int) -> int:
