@@ -10,7 +10,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 from typing import Literal
 
-Relation = Literal["=", "≈", "<", ">", "→"]
+Relation = Literal["=", "≈", "<", ">", "→", ":"]
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,0 +1,1 @@
+"""Stage: solve. The engine: practices, and the quantities that compute themselves under one."""

@@ -1,0 +1,1 @@
+"""Stage: solve. One file per quantity; the registry is `MODULES` in `authoring/shielding/quantity.py`."""

@@ -1,0 +1,72 @@
+"""The first electron lost when a species is ionised: outermost shell first, with the charges that show why.
+
+The reason offered is the lower effective nuclear charge of the outer electron. The total energies of the same
+rules say otherwise for Sc–Fe and Cu (3d before 4s), so no line here argues from total energies.
+"""
+
+from __future__ import annotations
+
+from authoring.atoms.configuration import Configuration
+from authoring.atoms.subshell import Subshell
+from authoring.shielding.practice import Practice
+from authoring.shielding.quantities.configuration import configuration_of, species_node
+from authoring.shielding.quantities.effective_charge import Z_EFF
+from authoring.shielding.quantity import PointRule, Quantity, Target, Value
+from authoring.working.lines import Line
+from authoring.working.nodes import Chain, Function, Node, Num, Occupied, Relation, Words
+from authoring.working.numbers import Rounding, shown
+
+
+def contenders(configuration: Configuration) -> tuple[Subshell, ...]:
+    """The outermost subshell, and the (n−1)d and (n−2)f that a candidate may take for it."""
+    outer = configuration.outermost
+    rivals = (Subshell(outer.n - 1, 2), Subshell(outer.n - 2, 3))
+    return (outer, *(each for each in rivals if each.n > each.l and configuration.count(each)))
+
+
+def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
+    found = contenders(configuration_of(target.species, practice))
+    charges = tuple(Target("effective nuclear charge", target.species, each) for each in found)
+    return (Target("configuration", target.species), *charges)
+
+
+def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Subshell:
+    found = contenders(inputs[0])
+    if practice.ion == "inner d first" and len(found) > 1:
+        return found[1]
+    return found[0]
+
+
+def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
+    found = contenders(inputs[0])
+    first: Node = Words(f"first electron lost: {value.label}")
+    rest: list[tuple[Relation, Node]] = []
+    if len(found) > 1:
+        charges = [
+            Chain(Function(Z_EFF, Occupied((each.label,))), (("=", Num(shown(charge))),))
+            for each, charge in sorted(zip(found, inputs[1:], strict=True), key=lambda pair: pair[1])
+        ]
+        rest = [("→", first)]
+        chain = Chain(charges[0], (("<", charges[1]), *rest))
+    else:
+        chain = Chain(species_node(target.species), ((":", first),))
+    return Line("first electron lost", target.about, chain, value, value.label)
+
+
+QUANTITY = Quantity(
+    name="first electron lost",
+    symbol=Words("first electron lost"),
+    unit="",
+    source="NIST ground states of ions: ns before (n−1)d before (n−2)f",
+    needs=_needs,
+    value=_value,
+    line=_line,
+    points=(
+        PointRule("B", "the electron lost first", "choice", 100),
+        PointRule("M", "the reason: lower effective nuclear charge, or the outer shell", "reason", 60, True),
+    ),
+    ask="Decide which electron {species} loses first, and give the reason.",
+    numeric=False,
+    aliases=("electron lost first",),
+    says="which electron goes when the species is ionised",
+)
