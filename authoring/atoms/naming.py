@@ -14,7 +14,8 @@ from authoring.faults import ContentError
 _LONGEST_TEXT = 400
 _TO_ASCII = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻−–", "0123456789+---")
 _WRITTEN = re.compile(r"([0-9]{0,3})\s*([A-Za-z]+)\s*(?:([0-9]{0,3})([+-]))?")
-_RANGE = re.compile(r"([A-Za-z]+|[0-9]{1,3})\s*-\s*([A-Za-z]+|[0-9]{1,3})")
+# Both ends alike: `Cl-35` is a nuclide's name to a chemist, never the elements from Cl to Br.
+_RANGE = re.compile(r"(?:([A-Za-z]+)\s*-\s*([A-Za-z]+)|([0-9]{1,3})\s*-\s*([0-9]{1,3}))")
 
 
 def read_species(text: str) -> Species:
@@ -47,7 +48,7 @@ def _what_is_wrong(head: str, plain: str) -> str:
     if re.fullmatch(r"[A-Za-z]+\s*[0-9]+", plain):
         return f"{quoted(head)}: a charge needs its sign (like `{plain}+`)"
     if re.fullmatch(r"[A-Za-z]+\s*[+-][0-9]+", plain):
-        return f"{quoted(head)}: a charge is written with the sign last (like `Fe3+`)"
+        return f"{quoted(head)}: a charge has its sign last and a mass number stands in front (like `Fe3+`, `35Cl`)"
     return f"{quoted(head)} is not a species (like `V`, `Fe3+`, `35Cl-`, `vanadium`)"
 
 
@@ -90,7 +91,7 @@ def parse_range(text: str) -> tuple[Species, ...]:
     for part in text.split(","):
         match = _RANGE.fullmatch(part.strip().translate(_TO_ASCII))
         if match is not None:
-            first, last = _end(match[1]), _end(match[2])
+            first, last = (_end(word) for word in match.groups() if word is not None)
             if last < first:
                 raise ContentError(f"the range {quoted(part.strip())} runs backwards")
             found.extend(Species(z) for z in range(first, last + 1))

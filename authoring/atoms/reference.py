@@ -17,6 +17,7 @@ from typing import Any, Literal
 from urllib.parse import quote
 
 from authoring.atoms.configuration import Configuration
+from authoring.atoms.subshell import LETTERS
 from authoring.faults import OutsideError
 
 Certainty = Literal["measured", "interpolated", "calculated"]
@@ -160,7 +161,8 @@ def ionization_energy(z: int, charge: int) -> IonizationEnergy | None:
 @cache
 def screening_constants() -> Mapping[tuple[int, int, int], Decimal]:
     """Clementi-Raimondi screening constants sigma, by (Z, n, l); they state Z_eff = Z - sigma."""
-    return MappingProxyType({(row[0], row[1], "spdf".index(row[2])): _tidy(row[3]) for row in _rows("screeningconstants")})
+    rows = _rows("screeningconstants")
+    return MappingProxyType({(z, n, LETTERS.index(letter)): _tidy(sigma) for z, n, letter, sigma in rows})
 
 
 @cache

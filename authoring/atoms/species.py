@@ -151,7 +151,10 @@ class Species:
 
     @staticmethod
     def parse(text: str) -> Species:
-        """Read `V`, `V2+`, `Fe 3+`, `Fe³⁺`, `O2-`, `35Cl-`, `vanadium`, `Cr: [Ar] 3d4 4s2`; `ContentError` otherwise."""
+        """Read `V`, `V2+`, `Fe 3+`, `Fe³⁺`, `O2-`, `35Cl-`, `vanadium`, `Cr: [Ar] 3d4 4s2`.
+
+        `ContentError`, with the nearest symbol or name, otherwise.
+        """
         from authoring.atoms.naming import read_species
 
         return read_species(text)
