@@ -138,8 +138,8 @@ def _is_letter(c: str) -> bool:
 
 def _script(text: str, style: _Style) -> str:
     if text == "′":
-        return r"\prime"
-    if text == "*" or (text.isascii() and (text.isdigit() or (len(text) == 1 and text.isalpha()))):
+        return r"\prime "
+    if text in ("", "*") or (text.isascii() and (text.isdigit() or (len(text) == 1 and text.isalpha()))):
         return text
     return MATH_GREEK.get(text) or _upright(text, style)
 
@@ -154,8 +154,9 @@ def _species(node: Formula | Occupied | Core, style: _Style) -> str:
                 label = f"({label})"
             return label if count is None else rf"{label}^{{{count}}}"
         case Formula(symbol, charge, mass):
-            left = rf"{{}}^{{{_upright(mass, style)}}}" if mass else ""
-            return left + _levels(shape.formula_pieces(symbol), style) + (f"^{{{_charge(charge, style)}}}" if charge else "")
+            left = f"{{}}^{{{_charge(mass, style)}}}" if mass else ""
+            right = f"^{{{_charge(charge, style)}}}" if charge else ""
+            return left + _levels(shape.formula_pieces(symbol), style) + right
 
 
 def _charge(text: str, style: _Style) -> str:
