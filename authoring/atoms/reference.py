@@ -34,7 +34,7 @@ SOURCES: Mapping[str, str] = MappingProxyType(
             "J. Chem. Phys. 47 (1967) 1300; as given by mendeleev"
         ),
         "ionic_radii": "Shannon, Acta Cryst. A32 (1976) 751, and later additions, as given by mendeleev",
-        "isotopes": "mendeleev (isotopes, from NUBASE and IUPAC)",
+        "isotopes": "mendeleev (table of isotopes)",
     }
 )
 
@@ -62,7 +62,7 @@ _COLUMNS: Mapping[str, tuple[str, ...]] = {
     ),
     "screeningconstants": ("atomic_number", "n", "s", "screening"),
     "ionicradii": ("atomic_number", "charge", "coordination", "spin", "ionic_radius", "crystal_radius"),
-    "isotopes": ("atomic_number", "mass_number"),
+    "isotopes": "mendeleev (table of isotopes)",
 }
 
 HEAVIEST = 118

@@ -83,7 +83,7 @@ def test_spot_values() -> None:
     assert hydrogen.certainty == "calculated"
     # Clementi & Raimondi 1963: C 1s/2s/2p 5.6727/3.2166/3.1358; Fe 3d/4s 11.1798/5.4340 (as Z_eff).
     sigma = reference.screening_constants()
-    assert [6 - sigma[6, n, l] for n, l in ((1, 0), (2, 0), (2, 1))] == [
+    assert [6 - sigma[key] for key in ((6, 1, 0), (6, 2, 0), (6, 2, 1))] == [
         Decimal("5.6727"),
         Decimal("3.2166"),
         Decimal("3.1358"),
