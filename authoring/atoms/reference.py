@@ -33,8 +33,8 @@ SOURCES: Mapping[str, str] = MappingProxyType(
             "Clementi & Raimondi, J. Chem. Phys. 38 (1963) 2686; Clementi, Raimondi & Reinhardt, "
             "J. Chem. Phys. 47 (1967) 1300; as given by mendeleev"
         ),
-        "ionic_radii": "Shannon, Acta Cryst. A32 (1976) 751, and later additions, as given by mendeleev",
-        "isotopes": "mendeleev (table of isotopes)",
+        "ionic_radii": "Shannon, Acta Cryst. A32 (1976) 751; Lundberg 2016; as given by mendeleev",
+        "isotopes": "IUPAC atomic masses, as given by mendeleev",
     }
 )
 
@@ -62,7 +62,7 @@ _COLUMNS: Mapping[str, tuple[str, ...]] = {
     ),
     "screeningconstants": ("atomic_number", "n", "s", "screening"),
     "ionicradii": ("atomic_number", "charge", "coordination", "spin", "ionic_radius", "crystal_radius"),
-    "isotopes": "mendeleev (table of isotopes)",
+    "isotopes": ("atomic_number", "mass_number"),
 }
 
 HEAVIEST = 118
