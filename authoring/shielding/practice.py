@@ -4,6 +4,7 @@ The defaults are the published practice: J. C. Slater, Phys. Rev. 36, 57 (1930).
 misunderstanding are the same thing to the engine: a practice with some fields changed (`changed`).
 Each field's metadata holds the words by which plans, slips and the guide know it.
 """
+# ruff: noqa: RUF009 - `_coefficient`, `_habit` and `_switch` are `field` with metadata
 
 from __future__ import annotations
 
@@ -83,7 +84,7 @@ class Practice:
     )
     # energies
     rydberg: Decimal = field(
-        default_factory=lambda: constant("Rydberg energy").value,
+        default_factory=lambda: constant("rydberg_energy").value,
         metadata={"words": "Rydberg energy", "says": "the Rydberg energy, eV"},
     )
     n_star: tuple[Decimal, ...] = field(
@@ -100,7 +101,7 @@ class Practice:
         "ionization energy: difference of total energies, or one electron's energy",
     )
     # sizes and electronegativity
-    radius_form: str = _habit("squared", ("squared", "not squared"), "radius form", "n* squared or not in r = n*²a₀/Z_eff")
+    radius_form: str = _habit("squared", ("squared", "not squared"), "radius form", "n* squared or not in n*²a₀/Z_eff")
     negativity_charge: str = _habit(
         "self counted", ("self counted", "Z_eff"), "Allred-Rochow charge", "whether the electron itself is counted"
     )
@@ -208,7 +209,8 @@ def with_convention(practice: Practice, words: str, value: str) -> Practice:
 def _extended(practice: Practice, shell: str, value: str) -> Practice:
     n = int(shell) if shell.isascii() and shell.isdigit() and len(shell) == 1 else 0
     if not 1 <= n <= len(practice.n_star) + 1:
-        raise ContentError(f"n* for {shell[:20]!r}: the table has n = 1 to {len(practice.n_star)}; the next may be added")
+        known = len(practice.n_star)
+        raise ContentError(f"n* for {shell[:20]!r}: the table has n = 1 to {known}; the next may be added")
     table = list(practice.n_star)
     number = _decimal(value, f"n* for {n}")
     if number <= 0:

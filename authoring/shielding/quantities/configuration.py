@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from authoring.atoms.configuration import Configuration, filling
-from authoring.atoms.species import Species, ionised
+from authoring.atoms.ionizing import add_electrons, remove_electrons
+from authoring.atoms.species import Species
 from authoring.atoms.subshell import Subshell
 from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
-from authoring.working.nodes import Chain, Formula, Node, Sym
+from authoring.working.nodes import Chain, Sym
 from authoring.working.numbers import Rounding
 
 
@@ -53,14 +54,14 @@ def _inner_d_first(atom: Configuration, charge: int) -> Configuration:
     return result if charge > 0 else ionised(atom, charge)
 
 
-def species_node(species: Species) -> Node:
-    """The species as it stands in a formula."""
-    return Formula(species.symbol, species.printed_charge, str(species.mass) if species.mass else "")
+def ionised(atom: Configuration, charge: int) -> Configuration:
+    """An atom's configuration with electrons removed by the taught rule, or added in filling order."""
+    return remove_electrons(atom, charge) if charge >= 0 else add_electrons(atom, -charge)
 
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
     short = target.get("form") == "noble-gas core"
-    chain = Chain(species_node(target.species), ((":", value.node(short)),))
+    chain = Chain(target.species.node(), ((":", value.node(short)),))
     return Line("configuration", target.about, chain, value, value.short() if short else value.full())
 
 

@@ -3,26 +3,27 @@
 from __future__ import annotations
 
 from decimal import Decimal
+from typing import Literal
 
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.screening_constant import S
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
-from authoring.working.nodes import Chain, Node, Num, Sum, Sym, Words
+from authoring.working.nodes import Chain, Node, Num, Relation, Sum, Sym, Words
 from authoring.working.numbers import Rounding, shown
 
 Z = Sym("Z")
 Z_EFF = Sym("Z", sub="eff")
 
+_Term = tuple[Literal["+", "−"], Node]
+
 
 def protons(target: Target, practice: Practice) -> int:
     """The number that a practice takes as the nuclear charge."""
     species = target.species
-    return {
-        "atomic number": species.z,
-        "electron count": species.electrons,
-        "mass number": species.mass_number,
-    }[practice.protons]
+    if practice.protons == "atomic number":
+        return species.z
+    return species.electrons if practice.protons == "electron count" else species.mass_number
 
 
 def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
@@ -39,20 +40,18 @@ def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Dec
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
     final = rounding.apply(value)
-    written = [("+", Num(str(protons(target, practice)))), ("−", Num(shown(inputs[0])))]
-    symbols: list[tuple[str, Node]] = [("+", Z), ("−", S)]
+    written: list[_Term] = [("+", Num(str(protons(target, practice)))), ("−", Num(shown(inputs[0])))]
+    symbols: list[_Term] = [("+", Z), ("−", S)]
     if practice.charge_added and target.species.charge:
-        sign = "+" if target.species.charge > 0 else "−"
+        sign: Literal["+", "−"] = "+" if target.species.charge > 0 else "−"
         written.append((sign, Num(str(abs(target.species.charge)))))
         symbols.append((sign, Words("charge")))
     if practice.reported == "S":
         chain = Chain(Z_EFF, (("=", S), ("=", Num(shown(final)))))
     else:
-        relation = "=" if final == value else "≈"
+        relation: Relation = "=" if final == value else "≈"
         chain = Chain(Z_EFF, (("=", Sum(tuple(symbols))), ("=", Sum(tuple(written))), (relation, Num(shown(final)))))
-    return Line(
-        "effective nuclear charge", target.about, chain, value, shown(final), rounded=final != value
-    )
+    return Line("effective nuclear charge", target.about, chain, value, shown(final), rounded=final != value)
 
 
 QUANTITY = Quantity(

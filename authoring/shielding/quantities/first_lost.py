@@ -9,7 +9,7 @@ from __future__ import annotations
 from authoring.atoms.configuration import Configuration
 from authoring.atoms.subshell import Subshell
 from authoring.shielding.practice import Practice
-from authoring.shielding.quantities.configuration import configuration_of, species_node
+from authoring.shielding.quantities.configuration import configuration_of
 from authoring.shielding.quantities.effective_charge import Z_EFF
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
@@ -19,9 +19,11 @@ from authoring.working.numbers import Rounding, shown
 
 def contenders(configuration: Configuration) -> tuple[Subshell, ...]:
     """The outermost subshell, and the (n−1)d and (n−2)f that a candidate may take for it."""
-    outer = configuration.outermost
-    rivals = (Subshell(outer.n - 1, 2), Subshell(outer.n - 2, 3))
-    return (outer, *(each for each in rivals if each.n > each.l and configuration.count(each)))
+    # The core stays closed: Pr3+ keeps 5p6 and would lose 4f (NIST).
+    open_part = configuration.beyond_core()
+    outer = open_part.outermost
+    places = ((outer.n - 1, 2), (outer.n - 2, 3))
+    return (outer, *(each for each in reversed(open_part.occupied) if (each.n, each.l) in places))
 
 
 def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
@@ -39,18 +41,18 @@ def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Sub
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
     found = contenders(inputs[0])
-    first: Node = Words(f"first electron lost: {value.label}")
-    rest: list[tuple[Relation, Node]] = []
-    if len(found) > 1:
-        charges = [
-            Chain(Function(Z_EFF, Occupied((each.label,))), (("=", Num(shown(charge))),))
-            for each, charge in sorted(zip(found, inputs[1:], strict=True), key=lambda pair: pair[1])
-        ]
-        rest = [("→", first)]
-        chain = Chain(charges[0], (("<", charges[1]), *rest))
-    else:
-        chain = Chain(species_node(target.species), ((":", first),))
-    return Line("first electron lost", target.about, chain, value, value.label)
+    lost = Words(f"first electron lost: {value.label}")
+    if len(found) == 1:
+        chain = Chain(target.species.node(), ((":", lost),))
+        return Line("first electron lost", target.about, chain, value, value.label)
+    rising = sorted(zip(inputs[1:], found, strict=True), key=lambda pair: pair[0])
+    names = [Function(Z_EFF, Occupied((each.label,))) for _, each in rising]
+    rest: list[tuple[Relation, Node]] = [("=", Num(shown(rising[0][0])))]
+    for index in range(1, len(rising)):
+        # Sc and La: both charges are 3.00, and only the outer shell is a reason.
+        equal = rising[index][0] == rising[index - 1][0]
+        rest += [("=" if equal else "<", names[index]), ("=", Num(shown(rising[index][0])))]
+    return Line("first electron lost", target.about, Chain(names[0], (*rest, ("→", lost))), value, value.label)
 
 
 QUANTITY = Quantity(

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from authoring.shielding.practice import Practice
-from authoring.shielding.quantities.configuration import species_node
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.shielding.screening import Group, grouped
 from authoring.working.lines import Line
@@ -31,9 +30,7 @@ def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> tup
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
     node = Row(tuple(group_node(group) for group in value))
-    return Line(
-        "groups", target.about, Chain(species_node(target.species), ((":", node),)), value, groups_text(value)
-    )
+    return Line("groups", target.about, Chain(target.species.node(), ((":", node),)), value, groups_text(value))
 
 
 QUANTITY = Quantity(

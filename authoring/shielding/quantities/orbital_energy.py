@@ -12,7 +12,7 @@ from authoring.shielding.quantities.effective_charge import Z_EFF, Z, protons
 from authoring.shielding.quantities.tally import felt_by
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
-from authoring.working.nodes import Chain, Fraction, Measured, Negative, Node, Num, Power, Product, Sym
+from authoring.working.nodes import Chain, Fraction, Measured, Negative, Node, Num, Power, Product, Relation, Sym
 from authoring.working.numbers import EXACT, Rounding, shown
 
 N_STAR_SYMBOL = Sym("n", sup="*")
@@ -45,9 +45,14 @@ def energy_shape(charge: Node, number: Node, practice: Practice) -> Node:
     return Fraction(top, number)
 
 
+def per_mole() -> Decimal:
+    """kJ/mol in one eV per particle."""
+    return constant("kilojoules_per_mole_of_electronvolts").value
+
+
 def in_unit(energy: Decimal, unit: str) -> Decimal:
     """An energy in eV, or per mole of electrons in kJ/mol."""
-    return energy if unit != "kJ/mol" else EXACT.multiply(energy, constant("electronvolt per particle").value)
+    return energy if unit != "kJ/mol" else EXACT.multiply(energy, per_mole())
 
 
 def _electron(target: Target, practice: Practice) -> Subshell:
@@ -74,21 +79,19 @@ def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: 
     charge_symbol = Z_EFF if practice.energy_charge == "Z_eff" else Z
     number_symbol = N_STAR_SYMBOL if practice.quantum_number == "n*" else Sym("n")
     rydberg = Num(shown(RYDBERG_SHOWN.apply(practice.rydberg)))
-    final = Measured(Num(shown(rounding.apply(value))), unit)
+    final = shown(rounding.apply(value))
     symbols = Negative(Product((Sym("R"), energy_shape(charge_symbol, number_symbol, practice)), juxtaposed=True))
     written = Negative(
         Product((Measured(rydberg, "eV"), energy_shape(Num(shown(charge)), Num(shown(number)), practice)))
     )
-    rest: list[tuple[str, Node]] = [("=", symbols), ("=", written)]
+    rest: list[tuple[Relation, Node]] = [("=", symbols), ("=", written)]
     if unit == "kJ/mol":
-        factor = Num(shown(Rounding(figures=6).apply(constant("electronvolt per particle").value)))
+        factor = Num(shown(Rounding(figures=6).apply(per_mole())))
         energy = electron_energy(charge, _electron(target, practice), practice)
         rest.append(("=", Measured(Num(shown(Rounding(figures=5).apply(energy))), "eV")))
         rest.append(("=", Product((Num(shown(Rounding(figures=5).apply(energy))), Measured(factor, "kJ/mol")))))
-    rest.append(("=", final))
-    return Line(
-        "orbital energy", target.about, Chain(Sym("E"), tuple(rest)), value, final.value.text, unit, rounded=True
-    )
+    rest.append(("=", Measured(Num(final), unit)))
+    return Line("orbital energy", target.about, Chain(Sym("E"), tuple(rest)), value, final, unit, rounded=True)
 
 
 QUANTITY = Quantity(

@@ -32,9 +32,7 @@ def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: 
         rest.append(("=", sum_of(Num(shown(share.product)) for share in shares)))
     final = rounding.apply(value)
     rest.append(("=" if final == value else "≈", Num(shown(final))))
-    return Line(
-        "screening constant", target.about, Chain(S, tuple(rest)), value, shown(final), rounded=final != value
-    )
+    return Line("screening constant", target.about, Chain(S, tuple(rest)), value, shown(final), rounded=final != value)
 
 
 QUANTITY = Quantity(
