@@ -100,6 +100,15 @@ class Practice:
         "others change", ("others change", "one electron only"), "ionization",
         "ionization energy: difference of total energies, or one electron's energy",
     )
+    ionised: str = _habit(
+        "taught rule", ("taught rule", "measured"), "ion in an ionization energy",
+        "the ion's configuration in an ionization energy: one electron fewer by the taught rule, or as measured "
+        "(V+, Co+, Ni+ … also move another electron); only where the ion configuration is the published one",
+    )
+    core: str = _habit(
+        "inner shells", ("inner shells", "noble gas"), "core",
+        "the core of the valence count: every shell below the outermost, or the noble-gas core",
+    )
     # sizes and electronegativity
     radius_form: str = _habit("squared", ("squared", "not squared"), "radius form", "n* squared or not in n*²a₀/Z_eff")
     negativity_charge: str = _habit(
@@ -141,7 +150,7 @@ def read_field(item: dataclasses.Field[Any], value: object) -> object:
     kind = str(item.type)
     words = item.metadata["words"]
     if kind == "Decimal":
-        return _decimal(value, words)
+        return read_decimal(value, words)
     if kind == "bool":
         if value in (True, "yes", "true"):
             return True
@@ -156,10 +165,11 @@ def read_field(item: dataclasses.Field[Any], value: object) -> object:
     texts = value.split() if isinstance(value, str) else value
     if not isinstance(texts, (list, tuple)) or not texts:
         raise ContentError(f"{words}: a list of numbers is needed")
-    return tuple(_decimal(text, words) for text in texts)
+    return tuple(read_decimal(text, words) for text in texts)
 
 
-def _decimal(value: object, words: str) -> Decimal:
+def read_decimal(value: object, words: str) -> Decimal:
+    """A number as a person writes it, of ordinary size. Raises ContentError otherwise, naming `words`."""
     text = str(value).strip()
     try:
         number = Decimal(text)
@@ -196,14 +206,18 @@ def with_convention(practice: Practice, words: str, value: str) -> Practice:
     """A practice with one convention, by its words."""
     if words.startswith("n* for "):
         return _extended(practice, words.removeprefix("n* for "), value)
+    return practice.changed(convention_changes(words, value))
+
+
+def convention_changes(words: str, value: object) -> dict[str, object]:
+    """The practice fields that a convention sets, by its words. Raises ContentError for unknown words."""
     fields = convention_fields()
     if words not in fields:
         raise ContentError(f"no convention {words!r}", words, [*fields, "n* for 7"])
     if words == "one shell in":
         # A course that changes the coefficient means all electrons of that shell, as the rule says.
-        number = _decimal(value, words)
-        return dataclasses.replace(practice, one_in=number, one_in_beside_d=number, one_in_d=number)
-    return practice.changed({fields[words].name: value})
+        return dict.fromkeys(("one_in", "one_in_beside_d", "one_in_d"), value)
+    return {fields[words].name: value}
 
 
 def _extended(practice: Practice, shell: str, value: str) -> Practice:
@@ -212,7 +226,7 @@ def _extended(practice: Practice, shell: str, value: str) -> Practice:
         known = len(practice.n_star)
         raise ContentError(f"n* for {shell[:20]!r}: the table has n = 1 to {known}; the next may be added")
     table = list(practice.n_star)
-    number = _decimal(value, f"n* for {n}")
+    number = read_decimal(value, f"n* for {n}")
     if number <= 0:
         raise ContentError(f"n* for {n}: a positive number is needed")
     table[n - 1 : n] = [number]

@@ -82,6 +82,7 @@ class Quantity:
     `needs(target, practice)`: the targets whose values are its inputs, in the order `value` receives them.
     `value(target, practice, inputs)`: the exact value. Raises ContentError where the species has none.
     `line(target, practice, inputs, value, rounding)`: the line of working.
+    `required`: the details that must be given; `defaults`: what the others are where they are not.
     `ask`: the wording of *calculate* in item Markdown with {electron}, {species} and detail names in braces.
     """
 
@@ -97,6 +98,8 @@ class Quantity:
     rounding: Rounding = field(default_factory=lambda: Rounding(places=2))
     takes: frozenset[str] = frozenset()
     details: tuple[str, ...] = ()
+    required: tuple[str, ...] = ()
+    defaults: tuple[tuple[str, str], ...] = ()
     units: tuple[str, ...] = ()
     numeric: bool = True
     aliases: tuple[str, ...] = ()
@@ -112,6 +115,17 @@ MODULES = (
     "effective_charge",
     "orbital_energy",
     "first_lost",
+    "total_energy",
+    "ionization_energy",
+    "radius",
+    "electronegativity",
+    "magnetism",
+    "moseley",
+    "valence_count",
+    "scf_charge",
+    "ionic_radius",
+    "measured",
+    "percentage_difference",
 )
 
 

@@ -80,3 +80,6 @@ def check_details(target: Target) -> None:
     for name, _ in target.detail:
         if name not in what.details:
             raise ContentError(f"{what.name} takes no {name!r}", name, what.details)
+    for name in what.required:
+        if not target.get(name):
+            raise ContentError(f"{what.name} needs {name!r}")

@@ -6,6 +6,7 @@ from decimal import Decimal
 
 from authoring.atoms.constants import constant
 from authoring.atoms.subshell import Subshell
+from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.configuration import configuration_of
 from authoring.shielding.quantities.effective_charge import Z_EFF, Z, protons
@@ -16,8 +17,14 @@ from authoring.working.nodes import Chain, Fraction, Measured, Negative, Node, N
 from authoring.working.numbers import EXACT, Rounding, shown
 
 N_STAR_SYMBOL = Sym("n", sup="*")
-RYDBERG_SHOWN = Rounding(figures=6)  # 13.6057 eV: what a data page prints
+_RYDBERG_SHOWN = Rounding(figures=6)  # 13.6057 eV: what a data page prints
 _TWO = Num("2")
+
+
+def rydberg_node(practice: Practice) -> Measured:
+    """`13.6057 eV`; a shorter value, which a course has chosen, as it stands."""
+    short = len(practice.rydberg.as_tuple().digits) <= 6
+    return Measured(Num(shown(practice.rydberg if short else _RYDBERG_SHOWN.apply(practice.rydberg))), "eV")
 
 
 def divisor(electron: Subshell, practice: Practice) -> Decimal:
@@ -26,7 +33,9 @@ def divisor(electron: Subshell, practice: Practice) -> Decimal:
 
 
 def electron_energy(charge: Decimal, electron: Subshell, practice: Practice) -> Decimal:
-    """−R (Z_eff/n*)² in eV (negative: bound), to 34 digits."""
+    """−R (Z_eff/n*)² in eV (negative: bound), to 34 digits. Raises ContentError where Z_eff is not positive."""
+    if charge <= 0:
+        raise ContentError(f"Z_eff is {shown(charge)} for {electron.label}: such an electron is not held")
     number = divisor(electron, practice)
     ratio = EXACT.divide(charge, number)
     form = {
@@ -78,11 +87,10 @@ def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: 
     number = divisor(_electron(target, practice), practice)
     charge_symbol = Z_EFF if practice.energy_charge == "Z_eff" else Z
     number_symbol = N_STAR_SYMBOL if practice.quantum_number == "n*" else Sym("n")
-    rydberg = Num(shown(RYDBERG_SHOWN.apply(practice.rydberg)))
     final = shown(rounding.apply(value))
     symbols = Negative(Product((Sym("R"), energy_shape(charge_symbol, number_symbol, practice)), juxtaposed=True))
     written = Negative(
-        Product((Measured(rydberg, "eV"), energy_shape(Num(shown(charge)), Num(shown(number)), practice)))
+        Product((rydberg_node(practice), energy_shape(Num(shown(charge)), Num(shown(number)), practice)))
     )
     rest: list[tuple[Relation, Node]] = [("=", symbols), ("=", written)]
     if unit == "kJ/mol":
