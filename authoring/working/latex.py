@@ -28,7 +28,7 @@ from authoring.working.nodes import (
 )
 from authoring.working.tex_escape import MATH_GREEK, escape_tex
 
-_RELATIONS = {"=": "=", "≈": r"\approx", "<": "<", ">": ">", "→": r"\rightarrow"}
+_RELATIONS = {"=": "=", "≈": r"\approx", "<": "<", ">": ">", "→": r"\rightarrow", ":": r"\colon"}
 _SIGNS = {"+": "+", "−": "-", "-": "-", "": ""}
 
 
