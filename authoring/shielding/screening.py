@@ -21,7 +21,7 @@ REGIONS: tuple[Region, ...] = ("same group", "one shell in", "deeper", "inside",
 
 @dataclass(frozen=True, slots=True)
 class Group:
-    """Electrons that the method treats alike: the subshells in it that hold electrons, and how many."""
+    """Electrons that the method treats alike: its subshells (s and p together even if p is empty), and how many."""
 
     subshells: tuple[Subshell, ...]
     electrons: int
@@ -64,9 +64,18 @@ def grouped(configuration: Configuration, practice: Practice) -> tuple[Group, ..
     for subshell, count in configuration.counts:
         found.setdefault(group_key(subshell, practice), []).append((subshell, count))
     return tuple(
-        Group(tuple(subshell for subshell, _ in members), sum(count for _, count in members))
-        for _, members in sorted(found.items())
+        Group(_members(tuple(subshell for subshell, _ in held), practice), sum(count for _, count in held))
+        for _, held in sorted(found.items())
     )
+
+
+def _members(held: tuple[Subshell, ...], practice: Practice) -> tuple[Subshell, ...]:
+    """The subshells of a group as it is written: (4s,4p) also where 4p is empty."""
+    first = held[0]
+    if first.l or first.n == 1 or practice.sp_split != "together":
+        return held
+    partner = Subshell(first.n, 1)
+    return held if partner in held else (first, partner, *held[1:])
 
 
 @functools.lru_cache(maxsize=65536)

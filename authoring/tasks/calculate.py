@@ -7,7 +7,7 @@ from pydantic import Field
 from authoring.faults import ContentError
 from authoring.shielding.quantity import Quantity, Target, quantity
 from authoring.shielding.solve import Step, work
-from authoring.slips.diagnose import slip_answers
+from authoring.slips.outcomes import as_known, outcomes, printed
 from authoring.tasks.fields import TargetFields, Word
 from authoring.tasks.points import pointed
 from authoring.tasks.setting import Setting, rounding_of, rounding_words, target_of
@@ -16,6 +16,7 @@ from authoring.tasks.task import Task
 from authoring.tasks.wording import asked, space_for
 from authoring.working.lines import Line
 from authoring.working.nodes import Chain, Measured, Node, Num
+from authoring.working.numbers import Rounding
 
 
 class Calculate(TargetFields):
@@ -40,11 +41,17 @@ def final_node(line: Line) -> Node:
     return chain.rest[-1][1] if chain.rest else chain.first
 
 
-def wrong_answers(target: Target, setting: Setting, part: TargetFields) -> tuple[Wrong, ...]:
-    """What single slips lead to, from the same earlier values, distinct from the right answer, likeliest first."""
-    rounding = rounding_of(quantity(target.quantity), part, setting)
-    found = slip_answers(target, practice=setting.practice, rounding=rounding, slips=tuple(setting.slips.values()))
-    return tuple(Wrong(tuple(slip.name for slip in each.slips), each.shown) for each in found)
+def wrong_answers(target: Target, setting: Setting, rounding: Rounding) -> tuple[Wrong, ...]:
+    """What single slips lead to from the same earlier values, distinct from the right answer, likeliest first."""
+    known = as_known(setting.known)
+    found = outcomes(target, setting.practice, known, setting.slips, 1)
+    return tuple(
+        Wrong(
+            tuple(slip.name for slip in each.slips),
+            printed(target, each.answer, setting.practice, known, rounding),
+        )
+        for each in found
+    )
 
 
 def solve(part: Calculate, setting: Setting) -> Solved:
@@ -67,7 +74,7 @@ def solve(part: Calculate, setting: Setting) -> Solved:
         answer=answer_of(steps[-1], what),
         points=pointed(steps, part.marks, part.scheme),
         space=space_for(steps) if part.space is None else part.space,
-        wrong=wrong_answers(target, setting, part) if what.numeric else (),
+        wrong=wrong_answers(target, setting, rounding) if what.numeric else (),
         notes=part.notes,
     )
 

@@ -12,7 +12,7 @@ from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantity import Quantity, Target, Value, quantity
 from authoring.shielding.solve import Step
-from authoring.slips.catalogue import Slip
+from authoring.slips.catalogue import Slips, shipped
 from authoring.tasks.fields import TargetFields
 from authoring.tasks.solved import Solved
 from authoring.working.numbers import Rounding
@@ -32,7 +32,7 @@ class Setting:
     earlier: tuple[Solved, ...] = ()
     turn: int = 0
     figures: int | None = None
-    slips: Mapping[str, Slip] = field(default_factory=dict)
+    slips: Slips = field(default_factory=shipped)
 
     @property
     def known(self) -> dict[Target, Value]:

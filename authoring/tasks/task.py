@@ -19,7 +19,7 @@ class Task:
     """A command word: the fields its parts take, and how a part is solved.
 
     `fields` is the pydantic model of a part; its field named like the task (with `_` for a space) holds what the
-    part asks for. `solve(part, setting)` raises ContentError where the variant cannot be asked this.
+    part asks for. `turns`: what is printed depends on the place of the paper in the set. `solve(part, setting)` raises ContentError where the variant cannot be asked this.
     """
 
     name: str
@@ -27,6 +27,7 @@ class Task:
     fields: type[PartFields]
     solve: Callable[[Any, Setting], Solved]
     example: str
+    turns: bool = False
 
 
 # One module each in authoring/tasks/, which defines TASK.

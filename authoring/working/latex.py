@@ -13,6 +13,7 @@ from authoring.working.nodes import (
     Formula,
     Fraction,
     Function,
+    Listed,
     Measured,
     Negative,
     Node,
@@ -64,7 +65,9 @@ def _print(node: Node, style: _Style) -> str:
         case Formula() | Occupied() | Core():
             return _species(node, style)
         case Row(items):
-            return r"\,".join(_print(item, style) for item in items)
+            return _side_by_side(items, style)
+        case Listed(items):
+            return r";\ ".join(_print(item, style) for item in items)
         case Sum():
             return _sum(shape.terms_of(node), style)
         case Product(juxtaposed=juxtaposed):
@@ -86,6 +89,16 @@ def _print(node: Node, style: _Style) -> str:
             return rf"{value}\,{_unit(unit, style)}" if unit else value
         case Chain(first, rest):
             return _print(first, style) + "".join(f" {_RELATIONS[rel]} {_print(item, style)}" for rel, item in rest)
+
+
+def _side_by_side(items: tuple[Node, ...], style: _Style) -> str:
+    """Thin spaces between formulas, word spaces beside words."""
+    pieces: list[str] = []
+    for at, item in enumerate(items):
+        if at:
+            pieces.append(r"\ " if isinstance(item, Words) or isinstance(items[at - 1], Words) else r"\,")
+        pieces.append(_print(item, style))
+    return "".join(pieces)
 
 
 def _number(text: str, style: _Style) -> str:

@@ -10,6 +10,7 @@ from authoring.working.nodes import (
     Formula,
     Fraction,
     Function,
+    Listed,
     Measured,
     Negative,
     Node,
@@ -54,6 +55,8 @@ def to_mathml(node: Node, *, decimal: str = ".") -> str:
             return _species(node)
         case Row(items):
             return _row(*_spaced([say(item) for item in items]))
+        case Listed(items):
+            return _row(_mo(";").join(say(item) for item in items))
         case Sum():
             return _sum(shape.terms_of(node), decimal)
         case Product(juxtaposed=juxtaposed):

@@ -76,6 +76,13 @@ class Row:
 
 
 @dataclass(frozen=True, slots=True)
+class Listed:
+    """Nodes one after the other with semicolons between them: the terms of a tally."""
+
+    items: tuple[Node, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class Sum:
     """`a + b − c`: terms with their sign; `("+", a)` first prints without a sign."""
 
@@ -159,6 +166,7 @@ Node = (
     | Occupied
     | Core
     | Row
+    | Listed
     | Sum
     | Product
     | Fraction

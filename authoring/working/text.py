@@ -10,6 +10,7 @@ from authoring.working.nodes import (
     Formula,
     Fraction,
     Function,
+    Listed,
     Measured,
     Negative,
     Node,
@@ -42,6 +43,8 @@ def to_text(node: Node, *, decimal: str = ".") -> str:
             return _species(node)
         case Row(items):
             return " ".join(say(item) for item in items)
+        case Listed(items):
+            return "; ".join(say(item) for item in items)
         case Sum():
             return _sum(shape.terms_of(node), decimal)
         case Product(juxtaposed=juxtaposed):
@@ -62,7 +65,11 @@ def to_text(node: Node, *, decimal: str = ".") -> str:
         case Measured(unit=unit):
             return f"{say(shape.value_of(node))} {unit}".rstrip()
         case Chain(first, rest):
-            return say(first) + "".join(f" {relation} {say(item)}" for relation, item in rest)
+            return say(first) + "".join(f"{_spaced(relation)}{say(item)}" for relation, item in rest)
+
+
+def _spaced(relation: str) -> str:
+    return ": " if relation == ":" else f" {relation} "
 
 
 def _sum(terms: tuple[tuple[str, Node], ...], decimal: str) -> str:

@@ -8,7 +8,7 @@ from authoring.shielding.practice import Practice
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.shielding.screening import Share, tallied
 from authoring.working.lines import Line
-from authoring.working.nodes import Chain, Node, Num, Occupied, Product, Row, Words
+from authoring.working.nodes import Chain, Listed, Node, Num, Occupied, Product, Row, Words
 from authoring.working.numbers import Rounding, shown
 
 
@@ -43,18 +43,8 @@ def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> tup
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:
     electron = felt_by(target, inputs[0])
-    words: list[Node] = []
-    for share in value:
-        if not share.count:
-            continue
-        words += [
-            Words(f"{share.region} ("),
-            Row(tuple(Occupied((each.label,)) for each in share.subshells)),
-            Words("):"),
-            share_node(share),
-            Words(";"),
-        ]
-    body: Node = Row(tuple(words[:-1])) if words else Words("no other electron")
+    terms = tuple(Row((Words(share.region), share_node(share))) for share in value if share.count)
+    body: Node = Listed(terms) if terms else Words("no other electron")
     text = "; ".join(f"{share.region}: {share.count} × {shown(share.coefficient)}" for share in value if share.count)
     return Line("tally", target.about, Chain(Occupied((electron.label,)), ((":", body),)), value, text or "none")
 

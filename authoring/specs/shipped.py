@@ -1,0 +1,43 @@
+"""Stage 1, read: where the shipped items, plans and templates are, in a checkout and in an installed wheel."""
+
+from __future__ import annotations
+
+import functools
+from pathlib import Path
+
+from authoring.faults import UsageError, suggestion
+
+_ROOM = Path(__file__).resolve().parent.parent
+
+
+@functools.cache
+def shipped_folder(name: str) -> Path:
+    """`templates` or `scenarios`: inside the installed package, or beside it in a checkout."""
+    for folder in (_ROOM / "_shipped" / name, _ROOM.parent / name):
+        if folder.is_dir():
+            return folder
+    raise UsageError(f"the installation lacks its folder of {name}; install shieldwright again")
+
+
+def shipped_names(kind: str) -> tuple[str, ...]:
+    """The names of the shipped `items` or `plans`, sorted."""
+    return tuple(sorted(path.stem for path in (shipped_folder("scenarios") / kind).glob("*.yaml")))
+
+
+def located(word: str, kind: str, beside: Path | None = None) -> Path:
+    """The file that a word means: a path (relative to `beside`, or to here), or a shipped name.
+
+    Raises UsageError with the nearest shipped name.
+    """
+    base = beside if beside is not None else Path()
+    for path in (base / word, base / f"{word}.yaml", base / kind / f"{word}.yaml"):
+        if "\0" not in word and path.is_file():
+            return path
+    names = shipped_names(kind)
+    if word in names:
+        return shipped_folder("scenarios") / kind / f"{word}.yaml"
+    noun = kind.removesuffix("s")
+    article = "an" if noun[0] in "aeiou" else "a"
+    raise UsageError(
+        f"no {noun} {word[:80]!r}: neither {article} {noun} file nor a shipped name{suggestion(word, names)}"
+    )
