@@ -127,8 +127,10 @@ def _share_digits(body: str, size: str, sign: str) -> tuple[str, str]:
 def _check_elements(body: str, word: str) -> None:
     if body.count("(") != body.count(")") or body.count("[") != body.count("]"):
         raise ContentError(f"{quoted(word)} has a bracket without its partner")
-    if body[:2].isupper() and body[:2].capitalize() in elements().by_symbol and body[1] not in elements().by_symbol:
-        raise ContentError(f"{quoted(word)} is not chemistry; did you mean {body[:2].capitalize()!r}?")
+    table = elements().by_symbol
+    near = body[:2].capitalize()
+    if body[1:2].isupper() and body[1] not in table and near in table:
+        raise ContentError(f"{quoted(word)} is not chemistry; did you mean {near!r}?")
     position = 0
     for match in re.finditer(r"([A-Z][a-z]?)|[0-9()\[\]·.]", body):
         if match.start() != position:
