@@ -1,0 +1,77 @@
+"""Stage 3, solve: the tables and the chart that an item prints with its story."""
+
+from __future__ import annotations
+
+from authoring.atoms.species import Species, parse_range
+from authoring.atoms.subshell import Subshell
+from authoring.faults import ContentError
+from authoring.shielding.quantity import Target, quantity
+from authoring.shielding.solve import work
+from authoring.specs.item import GivenTable, Item
+from authoring.specs.prose import read_prose
+from authoring.tasks.read import chart_of
+from authoring.tasks.setting import Setting, electron_named, species_named
+from authoring.tasks.solved import Chart
+from authoring.working.nodes import Inline, Math, Num, Paragraph, Plain, TableBlock
+
+
+def tables_of(item: Item, setting: Setting) -> tuple[TableBlock, ...]:
+    """The item's tables. Raises ContentError where a species lacks the quantity."""
+    return tuple(_computed(table, setting) if table.quantity else _typed(table) for table in item.given)
+
+
+def inlines(text: str) -> tuple[Inline, ...]:
+    """Item text of one paragraph as inlines. Raises ContentError for faults in it."""
+    prose, faults = read_prose(text)
+    if faults:
+        raise ContentError(faults[0].message)
+    children: tuple[Inline, ...] = ()
+    for block in prose:
+        if not isinstance(block, Paragraph):
+            raise ContentError("a cell or caption is one paragraph")
+        children += block.children
+    return children
+
+
+def _typed(table: GivenTable) -> TableBlock:
+    return TableBlock(
+        tuple(inlines(cell) for cell in table.header),
+        tuple(tuple(inlines(cell) for cell in row) for row in table.rows),
+        inlines(table.caption),
+        inlines(table.source),
+    )
+
+
+def _computed(table: GivenTable, setting: Setting) -> TableBlock:
+    what = quantity(table.quantity or "")
+    electron = electron_named(table.electron, setting) if table.electron else None
+    rows = []
+    for species in several_species(table.of, setting):
+        line = work(Target(what.name, species, electron), setting.practice)[-1].line
+        rows.append(((Math(species.node()),), (Math(Num(line.shown)),)))
+    if not rows:
+        raise ContentError("this table has no rows; say which species under `of`")
+    head = f"{what.name} / {what.unit}" if what.unit else what.name
+    return TableBlock(
+        ((Plain("species"),), (Plain(head),)), tuple(rows), inlines(table.caption), (Plain(table.source or what.source),)
+    )
+
+
+def several_species(words: tuple[str, ...], setting: Setting) -> tuple[Species, ...]:
+    """Drawn species, species and ranges, in the order given."""
+    found: list[Species] = []
+    for word in words:
+        if word in setting.bindings:
+            found.append(species_named(word, setting))
+        else:
+            found += parse_range(word)
+    return tuple(dict.fromkeys(found))
+
+
+def figure_of(item: Item, setting: Setting) -> Chart | None:
+    """The item's chart, or None. Raises ContentError where a species lacks the quantity."""
+    figure = item.figure
+    if figure is None:
+        return None
+    electron: Subshell | None = electron_named(figure.electron, setting)
+    return chart_of(figure.chart, several_species(figure.of, setting), electron, figure.style, setting)

@@ -1,0 +1,229 @@
+"""Stage 3, solve and vet: a variant becomes a question: its story, its tables, and its parts with their working."""
+
+from __future__ import annotations
+
+import string
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, replace
+from functools import lru_cache
+from typing import Any
+
+from pydantic import ValidationError
+
+from authoring.atoms.species import Species
+from authoring.faults import ContentError, Fault, FaultsFound, Source
+from authoring.papers.exhibits import figure_of, tables_of
+from authoring.papers.variants import Variant
+from authoring.papers.views import value_text, view
+from authoring.shielding.practice import Practice
+from authoring.slips.catalogue import Slips
+from authoring.specs.item import Alternative, Item, Part
+from authoring.specs.prose import ProseFault, read_prose
+from authoring.specs.template import Template
+from authoring.specs.template_expressions import TemplateFault
+from authoring.tasks.apart import told_apart
+from authoring.tasks.setting import Setting
+from authoring.tasks.solved import Chart, Solved
+from authoring.working.nodes import Prose, TableBlock
+
+LETTERS = string.ascii_lowercase
+ROMAN = ("i", "ii", "iii", "iv", "v", "vi")
+
+
+@dataclass(frozen=True, slots=True)
+class PartAsked:
+    """One part on the page: its label (`a`), its wording as prose, what was solved, and notes to markers.
+
+    Where the candidate chooses, `choices` holds the alternatives (labelled `i`, `ii`) and `solved` is the first's.
+    """
+
+    label: str
+    ask: Prose
+    solved: Solved
+    notes: tuple[Prose, ...]
+    choices: tuple[PartAsked, ...] = ()
+
+    @property
+    def marks(self) -> int:
+        """The marks of the part."""
+        return self.solved.marks
+
+
+@dataclass(frozen=True, slots=True)
+class Question:
+    """A variant, ready for the press and the judge."""
+
+    variant: Variant
+    title: str
+    story: Prose
+    caution: Prose
+    notes: tuple[Prose, ...]
+    tables: tuple[TableBlock, ...]
+    figure: Chart | None
+    figure_caption: Prose
+    parts: tuple[PartAsked, ...]
+
+    @property
+    def marks(self) -> int:
+        """The marks of all parts."""
+        return sum(part.marks for part in self.parts)
+
+
+@dataclass(frozen=True, slots=True)
+class Terms:
+    """What a plan asks of every question: the practice, figures, the slips that are known."""
+
+    practice: Practice
+    slips: Slips
+    figures: int | None = None
+
+
+def question(variant: Variant, terms: Terms, turn: int = 0) -> Question:
+    """Solve a variant. Raises FaultsFound with every fault of it, each at its place in the item's file."""
+    maker = _Maker(variant, terms, turn)
+    made = maker.question()
+    if maker.faults:
+        raise FaultsFound(maker.faults)
+    return made
+
+
+@lru_cache(maxsize=16384)
+def prose_of(text: str) -> tuple[Prose, tuple[ProseFault, ...]]:
+    """Item text as prose; texts repeat over papers."""
+    return read_prose(text)
+
+
+class _Maker:
+    """Builds one question and gathers its faults."""
+
+    def __init__(self, variant: Variant, terms: Terms, turn: int) -> None:
+        self.item: Item = variant.item
+        self.variant = variant
+        self.terms = terms
+        self.turn = turn
+        self.faults: list[Fault] = []
+        self.seen: Mapping[str, object] = {name: view(value, terms.practice) for name, value in variant.values}
+
+    def question(self) -> Question:
+        setting = Setting(self.terms.practice, self.variant.bindings, (), self.turn, self.terms.figures, self.terms.slips)
+        figure = self.item.figure
+        return Question(
+            variant=self.variant,
+            title=self.item.title,
+            story=self.prose(self.item.story, "story"),
+            caution=self.prose(self.item.caution, "caution"),
+            notes=tuple(self.prose(text, "notes", at) for at, text in enumerate(self.item.notes)),
+            tables=self.attempt(lambda: tables_of(self.item, setting), (), "given"),
+            figure=self.attempt(lambda: figure_of(self.item, setting), None, "figure"),
+            figure_caption=self.plain(figure.caption, "figure") if figure else (),
+            parts=self.parts(setting),
+        )
+
+    def attempt(self, make: Callable[[], Any], otherwise: Any, *steps: str | int) -> Any:
+        try:
+            return make()
+        except ContentError as error:
+            self.faults.append(Fault("unsolvable", error.full_message + self.where, self.item.at(*steps)))
+            return otherwise
+
+    @property
+    def where(self) -> str:
+        """The variant, for a message."""
+        words = ", ".join(f"{name} = {value_text(value)}" for name, value in self.variant.values)
+        return f" (in the variant {words})" if words else ""
+
+    def prose(self, template: Template, *steps: str | int) -> Prose:
+        """A template of the item with its values in place, as prose."""
+        try:
+            text = template.render(self.seen)
+        except TemplateFault as error:
+            place = self.item.tree.block_line(steps, error.line - 1, error.column)
+            self.faults.append(Fault("template", error.full_message + self.where, place))
+            return ()
+        return self.plain(text, *steps)
+
+    def plain(self, text: str, *steps: str | int) -> Prose:
+        """Item text as prose; faults in it stand at the template's own place."""
+        made, faults = prose_of(text)
+        for fault in faults:
+            place = self.item.tree.block_line(steps, fault.line - 1, fault.column)
+            self.faults.append(Fault("text", fault.message + self.where, place))
+        return made
+
+    def parts(self, setting: Setting) -> tuple[PartAsked, ...]:
+        """The parts in order; a part sees what those before it worked out."""
+        made: list[PartAsked] = []
+        for label, part in zip(LETTERS, self.item.parts, strict=False):
+            if isinstance(part, Alternative):
+                asked = self.alternative(part, label, setting)
+            else:
+                asked = self.part(part, label, setting)
+            if asked is None:
+                break  # what follows would complain about what this part did not give
+            made.append(asked)
+            setting = replace(setting, earlier=(*setting.earlier, asked.solved))
+        return tuple(made)
+
+    def alternative(self, either: Alternative, label: str, setting: Setting) -> PartAsked | None:
+        """The alternatives of a part: equal marks, each with its working."""
+        choices = [self.part(part, roman, setting) for roman, part in zip(ROMAN, either.parts, strict=False)]
+        solved = [choice for choice in choices if choice is not None]
+        if len(solved) < len(either.parts):
+            return None
+        if len({choice.marks for choice in solved}) > 1:
+            marks = ", ".join(str(choice.marks) for choice in solved)
+            self.faults.append(Fault("unequal", f"the alternatives give {marks} marks; they must be equal", either.source))
+        return PartAsked(label, (), solved[0].solved, (), tuple(solved))
+
+    def part(self, part: Part, label: str, setting: Setting) -> PartAsked | None:
+        """One part, solved."""
+        try:
+            solved = part.task.solve(self.fields(part), setting)
+        except TemplateFault as error:
+            self.faults.append(Fault("template", error.full_message + self.where, part.source))
+            return None
+        except ContentError as error:
+            self.faults.append(Fault("unsolvable", error.full_message + self.where, part.source))
+            return None
+        had = setting.had
+        return PartAsked(
+            label,
+            self.wording(solved.ask, part.source),
+            replace(solved, steps=told_apart(solved.steps, had)),
+            tuple(self.wording(note, part.source) for note in solved.notes),
+        )
+
+    def fields(self, part: Part) -> Any:
+        """The part's fields, with the texts that hold templates rendered for this variant."""
+        if not part.templates:
+            return part.fields
+        data = _copied(part.raw)
+        for steps, template in part.templates:
+            _put(data, steps, template.render(self.seen))
+        try:
+            return part.task.fields.model_validate(data)
+        except ValidationError as error:
+            raise ContentError(str(error.errors()[0]["msg"])) from error
+
+    def wording(self, text: str, place: Source) -> Prose:
+        """A task's wording as prose; faults in it stand at the part."""
+        made, faults = prose_of(text)
+        self.faults += [Fault("text", fault.message + self.where, place) for fault in faults]
+        return made
+
+
+def _copied(data: Any) -> Any:
+    if isinstance(data, Mapping):
+        return {key: _copied(value) for key, value in data.items()}
+    return [_copied(value) for value in data] if isinstance(data, list) else data
+
+
+def _put(data: Any, steps: tuple[str | int, ...], text: str) -> None:
+    for step in steps[:-1]:
+        data = data[step]
+    data[steps[-1]] = text
+
+
+def species_of(variant: Variant) -> tuple[Species, ...]:
+    """The species that a variant draws."""
+    return tuple(value for _, value in variant.values if isinstance(value, Species))
