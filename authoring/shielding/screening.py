@@ -101,11 +101,11 @@ def coefficient(electron: Subshell, other: Subshell, beside_d: bool, practice: P
 
 
 def _inside(electron: Subshell, other: Subshell, practice: Practice) -> bool:
-    if practice.next_s_inside_d and electron.l == 2 and other == Subshell(electron.n + 1, 0):
+    if practice.next_s_inside_d and electron.l == 2 and (other.n, other.l) == (electron.n + 1, 0):
         return True
-    if practice.d_outside_next_s and electron.l <= 1 and other == Subshell(electron.n - 1, 2):
+    if practice.d_outside_next_s and electron.l <= 1 and (other.n, other.l) == (electron.n - 1, 2):
         return False
-    if practice.f_inside_d and electron.l == 2 and other == Subshell(electron.n, 3):
+    if practice.f_inside_d and electron.l == 2 and (other.n, other.l) == (electron.n, 3):
         return True
     return group_key(other, practice) < group_key(electron, practice)
 
