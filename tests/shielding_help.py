@@ -87,7 +87,8 @@ def reckoned(node: Node) -> float | None:
             return None if above is None or below is None else above / below
         case Product(factors):
             parts = [reckoned(each) for each in factors]
-            return None if any(part is None for part in parts) else math.prod(part for part in parts if part is not None)
+            known = [part for part in parts if part is not None]
+            return math.prod(known) if len(known) == len(parts) else None
         case Sum(terms):
             signed = [(sign, reckoned(each)) for sign, each in terms]
             if any(part is None for _, part in signed):
@@ -99,5 +100,10 @@ def reckoned(node: Node) -> float | None:
 
 def reckonings(chain: Chain) -> list[float]:
     """Every member of a chain of equalities that can be worked out."""
-    found = [reckoned(node) for relation, node in chain.rest if relation in "=≈"]
-    return [each for each in found if each is not None]
+    found: list[float] = []
+    for relation, node in chain.rest:
+        if isinstance(node, Chain):
+            found += reckonings(node)
+        elif relation in "=≈" and (number := reckoned(node)) is not None:
+            found.append(number)
+    return found
