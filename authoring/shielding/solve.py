@@ -26,14 +26,15 @@ class Step:
 
 def evaluate(target: Target, practice: Practice, known: Mapping[Target, Value] | None = None) -> Value:
     """The exact value of a target. Raises ContentError where the species or practice has none."""
-    return _value(target, practice, dict(known) if known else {})
+    return evaluate_into(dict(known) if known else {}, target, practice)
 
 
-def _value(target: Target, practice: Practice, known: dict[Target, Value]) -> Value:
+def evaluate_into(known: dict[Target, Value], target: Target, practice: Practice) -> Value:
+    """As `evaluate`, keeping every value on the way in `known`: for many targets of the same species."""
     if target in known:
         return known[target]
     what = quantity(target.quantity)
-    inputs = tuple([_value(need, practice, known) for need in what.needs(target, practice)])
+    inputs = tuple([evaluate_into(known, need, practice) for need in what.needs(target, practice)])
     found = known[target] = what.value(target, practice, inputs)
     return found
 
@@ -68,8 +69,8 @@ def _work(
     needs = what.needs(target, practice)
     for need in needs:
         _work(need, practice, values, steps, None, done)
-    inputs = tuple([_value(need, practice, values) for need in needs])
-    value = _value(target, practice, values)
+    inputs = tuple([evaluate_into(values, need, practice) for need in needs])
+    value = evaluate_into(values, target, practice)
     done.add(target)
     steps.append(Step(target, what.line(target, practice, inputs, value, rounding or what.rounding)))
 

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+import functools
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Annotated, Any, Literal
@@ -11,6 +12,7 @@ from pydantic import BeforeValidator, Field
 
 from authoring.faults import ContentError, Fault, FaultsFound, Source, UsageError
 from authoring.shielding.practice import Practice, published, with_convention
+from authoring.slips.catalogue import Slip, Slips, make_slip, shipped
 from authoring.specs.item import Item, read_item
 from authoring.specs.shipped import located
 from authoring.specs.validate import validated
@@ -51,7 +53,7 @@ class PlanFields(Strict):
     figures: Annotated[Sized, Field(ge=1, le=8)] | None = Field(
         None, description="significant figures of energies and sizes"
     )
-    layout: LayoutFields = Field(default_factory=LayoutFields, description="page and type")
+    layout: LayoutFields = Field(default_factory=lambda: LayoutFields.model_validate({}), description="page and type")
     attach: tuple[Literal["constants", "periodic table"], ...] = Field(
         (), description="data printed after the questions"
     )
@@ -83,7 +85,8 @@ class Plan:
     layout: LayoutFields
     attach: tuple[str, ...]
     bare_values: str
-    slips: str | None
+    slips: Slips
+    slips_tree: Tree | None
     apart_from: str | None
     path: str
     tree: Tree = field(compare=False, repr=False)
@@ -95,18 +98,30 @@ class Plan:
 
 def read_plan(path: Path) -> Plan:
     """Read a plan and its items. Raises FaultsFound with everything wrong in any of them."""
-    tree = read_tree(path)
+
+    def slips_beside(word: str) -> Tree:
+        return read_tree(path.parent / word)
+
+    return plan_from(read_tree(path), path.stem, lambda word: read_item(located(word, "items", path.parent)), slips_beside)
+
+
+def plan_from(
+    tree: Tree, name: str, item_named: Callable[[str], Item], slips_named: Callable[[str], Tree]
+) -> Plan:
+    """A plan from its tree; the two functions find its items and its file of slips. Raises FaultsFound."""
     faults: list[Fault] = []
     fields, found = validated(PlanFields, tree.data, tree)
     faults += found
     data = tree.data if isinstance(tree.data, dict) else {}
     practice = _practice(data.get("conventions"), tree, faults)
     entries = _entries(data.get("items"), tree, faults)
-    items = _items(entries, path.parent, tree, faults)
+    items = _items(entries, item_named, tree, faults)
+    slips_tree = _slips_tree(data.get("slips"), slips_named, tree, faults)
+    slips = slips_from(slips_tree, faults) if slips_tree else shipped()
     if fields is None or faults:
         raise FaultsFound(faults)
     return Plan(
-        name=path.stem,
+        name=name,
         title=fields.plan,
         course=fields.course,
         date=fields.date,
@@ -121,7 +136,8 @@ def read_plan(path: Path) -> Plan:
         layout=fields.layout,
         attach=fields.attach,
         bare_values=fields.bare_values,
-        slips=fields.slips,
+        slips=slips,
+        slips_tree=slips_tree,
         apart_from=fields.apart_from,
         path=tree.path,
         tree=tree,
@@ -153,24 +169,53 @@ def _entries(data: object, tree: Tree, faults: list[Fault]) -> list[PlanItem]:
     return entries
 
 
-def _items(entries: list[PlanItem], beside: Path, tree: Tree, faults: list[Fault]) -> list[Item]:
+def _items(
+    entries: list[PlanItem], item_named: Callable[[str], Item], tree: Tree, faults: list[Fault]
+) -> list[Item]:
     items: list[Item] = []
-    read: dict[Path, Item] = {}
+    named = functools.cache(item_named)
     for at, entry in enumerate(entries):
-        place = tree.at(("items", at))
         try:
-            path = located(entry.item, "items", beside)
-            item = read[path] if path in read else read_item(path)
+            item = named(entry.item)
         except UsageError as error:
-            faults.append(Fault("no-item", error.message, place))
+            faults.append(Fault("no-item", error.message, tree.at(("items", at))))
             continue
         except FaultsFound as error:
-            faults += error.faults
+            faults += [fault for fault in error.faults if fault not in faults]
             continue
-        read[path] = item
         faults += _check_fixed(item, entry, tree, at)
         items.append(item)
     return items
+
+
+def _slips_tree(
+    word: object, slips_named: Callable[[str], Tree], tree: Tree, faults: list[Fault]
+) -> Tree | None:
+    if not isinstance(word, str) or not word:
+        return None
+    try:
+        return slips_named(word)
+    except UsageError as error:
+        faults.append(Fault("no-slips", error.message, tree.at(("slips",))))
+    except FaultsFound as error:
+        faults += error.faults
+    return None
+
+
+def slips_from(tree: Tree, faults: list[Fault]) -> Slips:
+    """The shipped slips with those of a course's file: name → did, tell, changes, likelihood, source."""
+    made: list[Slip] = []
+    data = tree.data if isinstance(tree.data, dict) else {}
+    if not data:
+        faults.append(Fault("slips", "a file of slips has their names as keys", tree.at()))
+    for name, fields in data.items():
+        try:
+            slip = make_slip(name, fields if isinstance(fields, dict) else {})
+            shipped().with_more([*made, slip])
+            made.append(slip)
+        except ContentError as error:
+            faults.append(Fault.from_error("slip", error, tree.key_at((name,))))
+    return shipped().with_more(made)
 
 
 def _check_fixed(item: Item, entry: PlanItem, tree: Tree, at: int) -> list[Fault]:

@@ -46,6 +46,11 @@ class Tree:
     _root: _Spot = field(repr=False, compare=False)
     _lines: tuple[str, ...] = field(repr=False, compare=False)
 
+    @property
+    def text(self) -> str:
+        """The file's text, as read."""
+        return "\n".join(self._lines)
+
     def at(self, path: Steps = ()) -> Source:
         """The place of the value at `path`."""
         spot, _ = self._find(path)
