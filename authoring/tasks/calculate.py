@@ -29,7 +29,7 @@ def answer_of(step: Step, what: Quantity) -> Answer:
     """The answer that a final step states."""
     line = step.line
     if not what.numeric:
-        kind = what.name if what.name in ("configuration", "groups") else "electron"
+        kind = what.name if what.name in ("configuration", "groups", "tally") else "electron"
         return Answer(kind, line.shown, final_node(line), line.value, line.unit)  # type: ignore[arg-type]
     node: Node = Num(line.shown)
     return Answer("number", line.shown, Measured(node, line.unit) if line.unit else node, line.value, line.unit)
@@ -72,7 +72,7 @@ def solve(part: Calculate, setting: Setting) -> Solved:
         ask=wording,
         steps=steps,
         answer=answer_of(steps[-1], what),
-        points=pointed(steps, part.marks, part.scheme),
+        points=pointed(steps, part.marks, part.scheme, main=(target,)),
         space=space_for(steps) if part.space is None else part.space,
         wrong=wrong_answers(target, setting, rounding) if what.numeric else (),
         notes=part.notes,

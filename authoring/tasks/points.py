@@ -3,14 +3,17 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from collections.abc import Collection, Iterable, Sequence
+from dataclasses import dataclass, replace
 
 from authoring.faults import ContentError
-from authoring.shielding.quantity import PointRule, quantities, quantity
+from authoring.shielding.quantity import PointRule, Target, quantities, quantity
 from authoring.shielding.solve import Step
 from authoring.tasks.fields import SchemeEntry
 from authoring.working.lines import Point
+
+# More than any quantity's own weight.
+MAIN = 1000
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,20 +39,42 @@ def pointed(
     marks: int | None,
     scheme: Sequence[SchemeEntry] = (),
     extra: Iterable[Candidate] = (),
+    default: int | None = None,
+    main: Collection[Target] = (),
 ) -> tuple[Point, ...]:
     """The mark points of a part: the scheme where there is one, else the heaviest `marks` of the default points.
 
-    Raises ContentError when `marks` asks for more points than the working has, or the scheme names a line that
-    is not there.
+    `extra` are the points of the task's own lines. `default` is the number of marks where the part says none
+    (every point, unless given). The lines of `main`, what the part is about, outweigh those on the way there.
+    Raises ContentError when `marks` asks for more points than the working has, or the scheme names a line that is
+    not there.
     """
-    candidates = sorted([*offered(steps), *extra], key=lambda each: each.line)
+    own = list(extra)
+    candidates = [_weighed(each, steps[each.line].target in main) for each in offered(steps)]
+    return chosen([*candidates, *own], steps, marks if marks is not None or scheme else default, scheme, own)
+
+
+def chosen(
+    candidates: Iterable[Candidate],
+    steps: Sequence[Step],
+    marks: int | None,
+    scheme: Sequence[SchemeEntry] = (),
+    own: Sequence[Candidate] = (),
+) -> tuple[Point, ...]:
+    """The same from the candidates given only; `own` are those of lines that state no quantity."""
+    found = sorted(candidates, key=lambda each: each.line)
     if scheme:
-        candidates = [_from_scheme(entry, steps) for entry in scheme]
-        if marks is not None and marks != len(candidates):
-            raise ContentError(f"the mark scheme has {len(candidates)} points, but marks says {marks}")
+        found = [_from_scheme(entry, steps, own) for entry in scheme]
+        if marks is not None and marks != len(found):
+            raise ContentError(f"the mark scheme has {len(found)} points, but marks says {marks}")
     elif marks is not None:
-        candidates = _heaviest(candidates, marks)
-    return numbered(candidates)
+        found = _heaviest(found, marks)
+    return numbered(found)
+
+
+def _weighed(candidate: Candidate, main: bool) -> Candidate:
+    rule = candidate.rule
+    return Candidate(candidate.line, replace(rule, weight=rule.weight + MAIN)) if main else candidate
 
 
 def _heaviest(candidates: list[Candidate], marks: int) -> list[Candidate]:
@@ -62,18 +87,29 @@ def _heaviest(candidates: list[Candidate], marks: int) -> list[Candidate]:
     return [candidates[at] for at in sorted(order[:marks])]
 
 
-def _from_scheme(entry: SchemeEntry, steps: Sequence[Step]) -> Candidate:
-    lines = [index for index, step in enumerate(steps) if step.target.quantity == entry.line]
+def _from_scheme(entry: SchemeEntry, steps: Sequence[Step], own: Sequence[Candidate]) -> Candidate:
+    name = _named(entry.line)
+    lines = [index for index, step in enumerate(steps) if step.target.quantity == name]
     if not lines:
         raise ContentError(
             f"the scheme gives a mark for {entry.line!r}, which is no line of this working",
             entry.line,
             list(dict.fromkeys(step.target.quantity for step in steps)),
         )
-    rules = [rule for rule in quantity(entry.line).points if rule.kind == entry.mark]
-    base = (rules or list(quantity(entry.line).points))[0]
+    closing = tuple(each.rule for each in own if each.line in lines)
+    rules = quantity(name).points if name in quantities() else closing
+    fitting = [rule for rule in rules if rule.kind == entry.mark]
+    base = (fitting or [*rules, PointRule(entry.mark, name, "value", 0)])[0]
     follow = base.follow_through if entry.follow_through is None else entry.follow_through
     return Candidate(lines[-1], PointRule(entry.mark, entry.what or base.what, base.aspect, base.weight, follow))
+
+
+def _named(line: str) -> str:
+    """A quantity's own name for an alias; the name of any other line as it is."""
+    try:
+        return quantity(line).name
+    except ContentError:
+        return line
 
 
 def numbered(candidates: Iterable[Candidate]) -> tuple[Point, ...]:

@@ -10,6 +10,7 @@ from authoring.atoms.species import Species
 from authoring.atoms.subshell import Subshell
 from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
+from authoring.shielding.quantities.configuration import configuration_of
 from authoring.shielding.quantity import Quantity, Target, Value, quantity
 from authoring.shielding.solve import Step
 from authoring.slips.catalogue import Slips, shipped
@@ -24,7 +25,7 @@ class Setting:
 
     `bindings`: drawn variables by name. `earlier`: the parts before this one, solved. `turn` is the place of the
     paper in the set (0, 1, …): what is balanced over papers turns with it. `figures` is the plan's choice of
-    significant figures, or None.
+    significant figures, or None. `pools`: what each variable was drawn from.
     """
 
     practice: Practice
@@ -33,6 +34,7 @@ class Setting:
     turn: int = 0
     figures: int | None = None
     slips: Slips = field(default_factory=shipped)
+    pools: Mapping[str, tuple[object, ...]] = field(default_factory=dict)
 
     @property
     def known(self) -> dict[Target, Value]:
@@ -91,7 +93,7 @@ def target_of(name: str, part: TargetFields, setting: Setting) -> Target:
     Raises ContentError where neither says, where a detail is not taken, or where the species lacks the electron.
     """
     what = quantity(name)
-    before = setting.earlier[-1].targets[0] if setting.earlier and setting.earlier[-1].targets else None
+    before = next((each.targets[0] for each in reversed(setting.earlier) if each.targets), None)
     if part.of is None and before is None:
         raise ContentError(f"{what.name} needs a species: say `of: …`")
     species = species_named(part.of, setting) if part.of is not None else before.species  # type: ignore[union-attr]
@@ -103,7 +105,22 @@ def target_of(name: str, part: TargetFields, setting: Setting) -> Target:
             electron = before.electron
     elif part.electron is not None:
         raise ContentError(f"{what.name} is not a quantity of an electron; leave `electron` out")
-    return Target(what.name, species, electron, details_of(what, part, setting))
+    target = Target(what.name, species, electron, details_of(what, part, setting))
+    must_have(target, setting.practice)
+    return target
+
+
+def must_have(target: Target, practice: Practice) -> None:
+    """Raise ContentError where the species has no electron in the subshell that the target names."""
+    if target.electron is None:
+        return
+    configuration = configuration_of(target.species, practice)
+    if not configuration.count(target.electron):
+        raise ContentError(
+            f"{target.species.label} has no {target.electron.label} electron ({configuration.short()})",
+            target.electron.label,
+            [each.label for each in configuration.occupied],
+        )
 
 
 def details_of(what: Quantity, part: TargetFields, setting: Setting) -> tuple[tuple[str, str], ...]:

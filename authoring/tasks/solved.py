@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from decimal import Decimal
 from typing import Literal
 
 from authoring.shielding.quantity import Target
@@ -11,7 +12,17 @@ from authoring.working.lines import Line, Point
 from authoring.working.nodes import Node
 
 AnswerKind = Literal[
-    "number", "configuration", "groups", "electron", "species", "order", "letter", "table", "correction", "text"
+    "number",
+    "configuration",
+    "groups",
+    "tally",
+    "electron",
+    "species",
+    "order",
+    "letter",
+    "table",
+    "correction",
+    "text",
 ]
 
 
@@ -19,7 +30,9 @@ AnswerKind = Literal[
 class Answer:
     """The answer: `shown` as printed without its unit, `node` for the press, `value` for the judge.
 
-    `value`: Decimal, Configuration, groups, Subshell, Species, a tuple of Species or electrons in order, or text.
+    `value`: Decimal, Configuration, groups, Subshell, Species, a tuple of Species or electrons in order, text; for a
+    table the tuple of its blanks' answers; for a correction (number of the first wrong line, value).
+    `accepted`: the range, ends included, that a reading off a chart may be in.
     """
 
     kind: AnswerKind
@@ -27,6 +40,7 @@ class Answer:
     node: Node
     value: object
     unit: str = ""
+    accepted: tuple[Decimal, Decimal] | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -68,7 +82,7 @@ class ShownWorking:
 class BlankTable:
     """A table to complete: a cell is a node, or None for a blank; `filled` has every cell, for the key.
 
-    `blanks` names each blank in reading order: its label on the sheet is (i), (ii), …
+    The blanks are labelled (i), (ii), … in reading order. A column's unit stands in its head.
     """
 
     header: tuple[Node, ...]

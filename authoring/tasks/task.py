@@ -19,7 +19,8 @@ class Task:
     """A command word: the fields its parts take, and how a part is solved.
 
     `fields` is the pydantic model of a part; its field named like the task (with `_` for a space) holds what the
-    part asks for. `turns`: what is printed depends on the place of the paper in the set. `solve(part, setting)` raises ContentError where the variant cannot be asked this.
+    part asks for. `turns`: what is printed depends on the place of the paper in the set. `solve(part, setting)` raises
+    ContentError where the variant cannot be asked this.
     """
 
     name: str
@@ -31,7 +32,7 @@ class Task:
 
 
 # One module each in authoring/tasks/, which defines TASK.
-MODULES = ("calculate", "decide")
+MODULES = ("calculate", "decide", "rank", "select", "correct", "identify", "complete", "explain", "read")
 
 
 @functools.cache

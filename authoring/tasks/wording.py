@@ -8,6 +8,7 @@ from authoring.atoms.species import Species
 from authoring.atoms.subshell import Subshell
 from authoring.shielding.quantity import Target, quantity
 from authoring.shielding.solve import Step
+from authoring.tasks.fields import PartFields
 
 
 def species_words(species: Species) -> str:
@@ -33,6 +34,11 @@ def asked(template: str, target: Target, extra: Mapping[str, str] | None = None)
     for name, text in words.items():
         template = template.replace("{" + name + "}", text)
     return template
+
+
+def worded(part: PartFields, turn: int, wording: str) -> str:
+    """The part's own wording, one of several by the place of the paper in the set, or else the default."""
+    return part.ask[turn % len(part.ask)] if part.ask else wording
 
 
 def noun(target: Target) -> str:

@@ -1,0 +1,87 @@
+"""*explain*: a short answer in words, marked by a rubric."""
+
+from __future__ import annotations
+
+from typing import Annotated, Any, Literal
+
+from pydantic import BeforeValidator, Field
+
+from authoring.faults import ContentError
+from authoring.shielding.quantity import PointRule
+from authoring.tasks.fields import PartFields, Several, Strict, Text
+from authoring.tasks.points import Candidate, numbered
+from authoring.tasks.setting import Setting
+from authoring.tasks.solved import Answer, Solved
+from authoring.tasks.task import Task
+from authoring.tasks.wording import worded
+from authoring.working.nodes import Words
+
+NOT = "not"
+_MARKUP = str.maketrans("", "", "`*$")
+
+
+class RubricPoint(Strict):
+    """What earns one mark."""
+
+    point: Annotated[str, Field(min_length=1, max_length=2_000)] = Field(description="what earns the mark")
+    mark: Literal["M", "A", "B"] = Field("B", description="the kind of mark")
+
+
+def _as_point(value: Any) -> Any:
+    return {"point": value} if isinstance(value, str) else value
+
+
+class Explain(PartFields):
+    """`explain: why …`, with what earns each mark under `rubric`, and what does not under `not`."""
+
+    explain: Annotated[str, Field(min_length=1, max_length=2_000)] = Field(
+        description="what is to be explained, as it goes on after the word Explain"
+    )
+    rubric: Annotated[
+        tuple[Annotated[RubricPoint, BeforeValidator(_as_point)], ...], Field(min_length=1, max_length=20)
+    ] = Field(description="one entry a mark: a text, or `point` and `mark`")
+    not_: Several = Field((), alias="not", description="what earns no mark, though it may be met")
+    model: Text = Field("", description="a model answer; left out: the points of the rubric")
+
+
+def solve(part: Explain, setting: Setting) -> Solved:
+    """The question and its rubric; there is no working, and the points belong to the rubric's entries in order."""
+    if part.scheme:
+        raise ContentError("an explanation is marked by its `rubric`; leave `scheme` out")
+    if part.marks is not None and part.marks != len(part.rubric):
+        raise ContentError(f"marks: {part.marks}, but the rubric has {len(part.rubric)} points, one mark each")
+    points = numbered(
+        Candidate(at, PointRule(entry.mark, entry.point, "reason", 100)) for at, entry in enumerate(part.rubric)
+    )
+    model = part.model or "; ".join(entry.point.rstrip(".;") for entry in part.rubric)
+    plain = " ".join(model.translate(_MARKUP).split())
+    rubric = [(point.code, point.what) for point in points] + [(NOT, text) for text in part.not_]
+    what = part.explain.rstrip().rstrip(".")
+    return Solved(
+        task="explain",
+        quantity="",
+        targets=(),
+        ask=worded(part, setting.turn, f"Explain {what}."),
+        steps=(),
+        answer=Answer("text", model, Words(plain), model),
+        points=points,
+        space=1 + 2 * len(points) if part.space is None else part.space,
+        notes=part.notes,
+        rubric=tuple(rubric),
+    )
+
+
+TASK = Task(
+    name="explain",
+    says="explain in words, marked by a rubric of points",
+    fields=Explain,
+    solve=solve,
+    example=(
+        "- explain: why vanadium loses its `4s` electrons before its `3d` electrons\n"
+        "  rubric:\n"
+        "    - the `4s` electrons feel the smaller effective nuclear charge\n"
+        "    - point: they lie in a shell further out\n"
+        "      mark: B\n"
+        "  not: that `4s` is filled first\n"
+    ),
+)
