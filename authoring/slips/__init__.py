@@ -1,0 +1,1 @@
+"""Stage: solve. Slips: misunderstandings as data, and the diagnosis that finds them in a value."""
