@@ -2,15 +2,14 @@
 
 from __future__ import annotations
 
-from authoring.atoms.species import Species, parse_range
-from authoring.atoms.subshell import Subshell
 from authoring.faults import ContentError
 from authoring.shielding.quantity import Target, quantity
 from authoring.shielding.solve import work
 from authoring.specs.item import GivenTable, Item
 from authoring.specs.prose import read_prose
 from authoring.tasks.read import chart_of
-from authoring.tasks.setting import Setting, electron_named, species_named
+from authoring.tasks.setting import Setting, electron_named
+from authoring.tasks.several import species_listed
 from authoring.tasks.solved import Chart
 from authoring.working.nodes import Inline, Math, Num, Paragraph, Plain, TableBlock
 
@@ -46,7 +45,7 @@ def _computed(table: GivenTable, setting: Setting) -> TableBlock:
     what = quantity(table.quantity or "")
     electron = electron_named(table.electron, setting) if table.electron else None
     rows = []
-    for species in several_species(table.of, setting):
+    for species in species_listed(table.of, setting):
         line = work(Target(what.name, species, electron), setting.practice)[-1].line
         rows.append(((Math(species.node()),), (Math(Num(line.shown)),)))
     if not rows:
@@ -57,21 +56,13 @@ def _computed(table: GivenTable, setting: Setting) -> TableBlock:
     )
 
 
-def several_species(words: tuple[str, ...], setting: Setting) -> tuple[Species, ...]:
-    """Drawn species, species and ranges, in the order given."""
-    found: list[Species] = []
-    for word in words:
-        if word in setting.bindings:
-            found.append(species_named(word, setting))
-        else:
-            found += parse_range(word)
-    return tuple(dict.fromkeys(found))
-
-
 def figure_of(item: Item, setting: Setting) -> Chart | None:
     """The item's chart, or None. Raises ContentError where a species lacks the quantity."""
     figure = item.figure
     if figure is None:
         return None
-    electron: Subshell | None = electron_named(figure.electron, setting)
-    return chart_of(figure.chart, several_species(figure.of, setting), electron, figure.style, setting)
+    if figure.electrons:
+        if len(figure.of) != 1:
+            raise ContentError("a chart of electrons is of one species: name one under `of`")
+        return chart_of(figure.chart, figure.electrons, setting, of=figure.of[0], style=figure.style)
+    return chart_of(figure.chart, figure.of, setting, electron=figure.electron, style=figure.style)

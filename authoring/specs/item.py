@@ -39,7 +39,8 @@ class FigureFields(Strict):
 
     chart: Word = Field(description="the quantity shown")
     of: Words = Field(description="species, drawn species, or ranges: the points in order")
-    electron: Word = Field("outermost", description="for a quantity of an electron")
+    electron: Word | None = Field(None, description="for a quantity of an electron; left out: the outermost")
+    electrons: Words = Field((), description="electrons of the one species under `of`, as the points")
     style: Literal["points", "levels"] = Field("points", description="points joined by lines, or energy levels")
     caption: Text = Field("", description="the words under the chart")
 

@@ -72,6 +72,24 @@ def solve(part: Read, setting: Setting) -> Solved:
     return _jump(part, setting, chart)
 
 
+def chart_of(
+    name: str,
+    words: Sequence[str],
+    setting: Setting,
+    *,
+    of: str | None = None,
+    electron: str | None = None,
+    style: Literal["points", "levels"] = "points",
+) -> Chart:
+    """A chart of a quantity over species (or electrons of one): the item's own figure, with nothing asked of it."""
+    part = TargetFields.model_validate({"of": of, "electron": electron})
+    compared = things(name, words, part, setting, key="of")
+    if not FEWEST <= len(compared.targets) <= MOST:
+        raise ContentError(f"a chart has {FEWEST} to {MOST} points, not {len(compared.targets)}")
+    values = values_of(compared, setting)
+    return _Charted(compared, values, reading_tolerance(list(values.values())), style).exhibit()
+
+
 class _Charted:
     """What is on the chart, and how closely it can be read."""
 
