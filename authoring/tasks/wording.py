@@ -28,6 +28,7 @@ def asked(template: str, target: Target, extra: Mapping[str, str] | None = None)
     words = {
         "species": species_words(target.species),
         "electron": electron_words(target.electron),
+        **dict(quantity(target.quantity).defaults),
         **dict(target.detail),
         **(extra or {}),
     }

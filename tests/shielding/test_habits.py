@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 import pytest
-from shielding_help import practice, value
+from shielding_help import practice, target, value
 
 from authoring.faults import ContentError
 from authoring.shielding.practice import convention_fields, published, with_convention, with_conventions
 from authoring.shielding.quantity import Value
+from authoring.shielding.solve import evaluate
 
 ALL_IN = ("one_in", "one_in_beside_d", "one_in_d")
 
@@ -116,6 +117,14 @@ def test_an_ionization_energy_uses_the_habits_of_ions() -> None:
     """Who takes 3d before 4s works with another ion; who keeps the neutral atom's electrons finds nothing lost."""
     assert value("ionization energy", "V", practice(ion="inner d first")) < value("ionization energy", "V")
     assert value("ionization energy", "V", practice(ion="as the neutral atom")) == 0
+
+
+def test_who_takes_inner_d_first_also_names_it() -> None:
+    """The habit decides the electron lost first and the one whose energy is taken; without a d electron, ns goes."""
+    rules = practice(ion="inner d first", relaxation="one electron only")
+    lost = {word: evaluate(target("first electron lost", word), rules).label for word in ("V", "Ca", "Yb")}
+    assert lost == {"V": "3d", "Ca": "4s", "Yb": "6s"}
+    assert value("ionization energy", "V", rules) == -value("orbital energy", "V 3d")
 
 
 def test_a_stated_configuration_loses_its_own_electron() -> None:

@@ -78,9 +78,28 @@ def test_every_quantity_is_documented(name: str) -> None:
     assert len({rule.weight for rule in what.points}) == len(what.points)
     assert set(what.required) <= set(what.details)
     assert {key for key, _ in what.defaults} <= set(what.details)
-    assert ("unit" in what.details) == (bool(what.units) or name in ("atomic number from Kα", "percentage difference"))
+    assert ("unit" in what.details) == bool(what.units)
     for alias in what.aliases:
         assert quantity(alias) is what
+
+
+def test_names_and_aliases_are_unique() -> None:
+    """No word means two quantities."""
+    words = [word.lower() for what in quantities().values() for word in (what.name, *what.aliases)]
+    assert len(words) == len(set(words))
+
+
+@pytest.mark.parametrize("name", ["orbital energy", "total energy", "ionization energy", "measured IE", "Kα energy"])
+def test_an_energy_in_another_unit_is_refused(name: str) -> None:
+    """Electronvolts are never printed under another unit's name."""
+    with pytest.raises(ContentError, match="not 'J'"):
+        evaluate(target(name, "V", unit="J"), published())
+
+
+def test_energies_per_mole() -> None:
+    """1 eV per particle is 96.485 kJ/mol (SI 2019): C 11.463 eV is 1106.0 kJ/mol."""
+    text = printed("ionization energy", "C", unit="kJ/mol")
+    assert text.endswith("= 11.463 eV = 1105.99 kJ/mol")
 
 
 WIDE = with_conventions(published(), {"n* for 7": "4.3"})

@@ -32,11 +32,15 @@ def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
     return (Target("configuration", target.species), *charges)
 
 
+def first_lost(configuration: Configuration, practice: Practice) -> Subshell:
+    """The subshell that loses an electron first: the outermost, or (n−1)d under that habit."""
+    found = contenders(configuration)
+    inner = [each for each in found[1:] if each.l == 2]
+    return inner[0] if practice.ion == "inner d first" and inner else found[0]
+
+
 def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Subshell:
-    found = contenders(inputs[0])
-    if practice.ion == "inner d first" and len(found) > 1:
-        return found[1]
-    return found[0]
+    return first_lost(inputs[0], practice)
 
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:

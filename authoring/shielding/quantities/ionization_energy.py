@@ -14,7 +14,8 @@ from authoring.atoms.species import Species
 from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.configuration import configuration_of, ionised
-from authoring.shielding.quantities.orbital_energy import in_unit
+from authoring.shielding.quantities.first_lost import first_lost
+from authoring.shielding.quantities.orbital_energy import UNITS, in_unit
 from authoring.shielding.quantities.total_energy import TOTAL, energy_of
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
@@ -56,8 +57,7 @@ def before_and_after(target: Target, practice: Practice) -> tuple[Species, Speci
 def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
     before, after = before_and_after(target, practice)
     if practice.relaxation == "one electron only":
-        lost = configuration_of(before, practice).beyond_core().outermost
-        return (Target("orbital energy", before, lost),)
+        return (Target("orbital energy", before, first_lost(configuration_of(before, practice), practice)),)
     species = (before, after) if after.electrons else (before,)
     return tuple(Target("total energy", each) for each in species)
 
@@ -108,7 +108,7 @@ QUANTITY = Quantity(
     rounding=Rounding(places=2),
     details=("stage", "unit"),
     defaults=(("stage", "1"),),
-    units=("eV", "kJ/mol"),
+    units=UNITS,
     aliases=("IE", "ionisation energy", "I"),
     says="the energy that takes one electron away, the others' charges changing as it goes",
 )

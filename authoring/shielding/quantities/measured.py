@@ -8,7 +8,7 @@ from authoring.atoms.reference import SOURCES, IonicRadius, IonizationEnergy, io
 from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.ionization_energy import stage_of
-from authoring.shielding.quantities.orbital_energy import in_unit
+from authoring.shielding.quantities.orbital_energy import UNITS, in_unit
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value
 from authoring.working.lines import Line
 from authoring.working.nodes import Chain, Function, Measured, Num, Sym
@@ -83,7 +83,7 @@ ENERGY = Quantity(
     rounding=Rounding(places=2),
     details=("stage", "unit"),
     defaults=(("stage", "1"),),
-    units=("eV", "kJ/mol"),
+    units=UNITS,
     aliases=("measured ionisation energy", "measured IE"),
     says="what spectroscopy gives for taking an electron away",
 )

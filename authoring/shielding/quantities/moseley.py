@@ -42,7 +42,11 @@ _E = Sym("E", sub="Kα")
 
 
 def _scale(target: Target) -> int:
-    return 1000 if target.get("unit", "eV") == "keV" else 1
+    """Electronvolts in the target's unit. Raises ContentError for a unit that X-ray lines are not given in."""
+    unit = target.get("unit", "eV")
+    if unit not in UNITS:
+        raise ContentError(f"the energy of a line is given in eV or keV, not {unit[:20]!r}", unit, UNITS)
+    return 1000 if unit == "keV" else 1
 
 
 def _factor(practice: Practice) -> tuple[Node, ...]:
@@ -172,6 +176,7 @@ NUMBER = Quantity(
     details=("energy", "unit"),
     required=("energy",),
     defaults=(("unit", "eV"),),
+    units=UNITS,
     aliases=("atomic number from K-alpha",),
     says="the element that an X-ray line belongs to",
 )

@@ -16,6 +16,7 @@ from authoring.working.lines import Line
 from authoring.working.nodes import Chain, Fraction, Measured, Negative, Node, Num, Power, Product, Relation, Sym
 from authoring.working.numbers import EXACT, Rounding, shown
 
+UNITS = ("eV", "kJ/mol")
 N_STAR_SYMBOL = Sym("n", sup="*")
 _RYDBERG_SHOWN = Rounding(figures=6)  # 13.6057 eV: what a data page prints
 _TWO = Num("2")
@@ -60,8 +61,12 @@ def per_mole() -> Decimal:
 
 
 def in_unit(energy: Decimal, unit: str) -> Decimal:
-    """An energy in eV, or per mole of electrons in kJ/mol."""
-    return energy if unit != "kJ/mol" else EXACT.multiply(energy, per_mole())
+    """An energy in eV (also where no unit is said), or per mole in kJ/mol. Raises ContentError for another unit."""
+    if unit in ("", "eV"):
+        return energy
+    if unit != "kJ/mol":
+        raise ContentError(f"an energy is given in eV or kJ/mol, not {unit[:20]!r}", unit, UNITS)
+    return EXACT.multiply(energy, per_mole())
 
 
 def _electron(target: Target, practice: Practice) -> Subshell:
@@ -118,7 +123,7 @@ QUANTITY = Quantity(
     rounding=Rounding(figures=4),
     takes=frozenset({"electron"}),
     details=("unit",),
-    units=("eV", "kJ/mol"),
+    units=UNITS,
     aliases=("E", "electron energy", "energy"),
     says="the energy of one electron in the screened field",
 )

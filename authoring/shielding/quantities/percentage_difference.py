@@ -75,7 +75,7 @@ QUANTITY = Quantity(
     ask="Calculate by how many per cent the {of} of {species} differs from its {from}.",
     rounding=Rounding(places=1),
     takes=frozenset({"electron"}),
-    details=("of", "from", "stage", "unit", "radius", "coordination", "spin", "partner", "distance", "screening"),
+    details=("of", "from", "stage", "radius", "coordination", "spin", "partner", "distance", "screening"),
     required=_OWN,
     aliases=("per cent difference", "percent difference"),
     says="how far a model's value lies from another's, or from the measured one",

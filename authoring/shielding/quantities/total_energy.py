@@ -9,6 +9,7 @@ from authoring.shielding.quantities.configuration import configuration_of
 from authoring.shielding.quantities.effective_charge import Z_EFF, Z, protons
 from authoring.shielding.quantities.orbital_energy import (
     N_STAR_SYMBOL,
+    UNITS,
     divisor,
     electron_energy,
     energy_shape,
@@ -105,7 +106,7 @@ QUANTITY = Quantity(
     ask="Calculate the total energy of the electrons of {species} from Slater's rules.",
     rounding=TOTAL,
     details=("unit",),
-    units=("eV", "kJ/mol"),
+    units=UNITS,
     aliases=("E_total", "sum of energies"),
     says="the energy of all electrons together, group by group",
 )
