@@ -92,9 +92,7 @@ def _lua_fonts(head: Document, fonts: Sequence[Fallback]) -> None:
             r'list[\string#list + 1] = "file:" .. font[1] .. ":" .. font[2] end end '
             r'luaotfload.add_fallback("names", list)}' + "\n"
             r"\setmainfont{Latin Modern Roman}[RawFeature={fallback=names}]" + "\n"
-            r"\newcommand{\namefont}{\rmfamily}" + "\n"
-            # A character that no font has must stop the run: by default LuaTeX leaves a blank and says nothing.
-            r"\tracinglostchars=3 "
+            r"\newcommand{\namefont}{\rmfamily}"
         )
     )
 
@@ -119,7 +117,9 @@ def _sizes(size: int) -> str:
     return "%\n".join(rows)
 
 
-_LAYOUT = r"""\setlength{\parindent}{0pt}
+# A character that the font in use does not have must stop the run: by default TeX leaves a blank and says nothing.
+_LAYOUT = r"""\tracinglostchars=3
+\setlength{\parindent}{0pt}
 \setlength{\parskip}{0.5\baselineskip plus 2pt}
 \setlength{\arraycolsep}{0.3em}
 \setlength{\emergencystretch}{3em}

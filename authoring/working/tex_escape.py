@@ -76,7 +76,7 @@ _NARROW_MAP: dict[str, str] = {
 _NARROW = str.maketrans(_NARROW_MAP)
 _PRINTABLE = re.compile("[ -~" + re.escape("".join(sorted(T1_CLEAN | {c for c in _NARROW_MAP if c > "~"}))) + r"\t\n]*")
 _GREEK_WORD = re.compile("[\u0370-\u03ff]{2}")
-_LIGATURE = re.compile(r"([-',])(?=\1)")
+_LIGATURE = re.compile(r"([-',<>`])(?=\1)|[!?](?=`)")
 _REFUSED = {"Cc": "a control character", "Cs": "half of a surrogate pair", "Co": "a private-use character"}
 
 
@@ -93,7 +93,7 @@ def escape_tex(text: str, wide: bool = False) -> str:
         missing = next(c for c in clean if not _PRINTABLE.fullmatch(c))
         raise ContentError(f"{named(missing)} needs LuaTeX to be printed", missing)
     # An empty group would not part a ligature under LuaTeX: nothing of it stays in the line.
-    parted = _LIGATURE.sub(lambda match: match[1] + "\0", clean)
+    parted = _LIGATURE.sub(lambda match: match[0] + "\0", clean)
     source = parted.translate(_WIDE if wide else _NARROW).replace("\0", r"\kern0pt{}")
     return "{*}" + source[1:] if source.startswith("*") else source
 

@@ -12,7 +12,7 @@ from pypdf import PdfReader
 from authoring.faults import ContentError
 from authoring.press.fonts import fonts_for
 from authoring.press.preamble import preamble
-from authoring.press.tex import compile_tex
+from authoring.press.tex import Engine, compile_tex
 from authoring.working.latex import to_latex
 from authoring.working.nodes import Words
 from authoring.working.tex_escape import MATH_GREEK, T1_CLEAN, escape_tex, needs_wide
@@ -58,7 +58,7 @@ def accepted(texts: list[str], wide: bool) -> list[str]:
 def document(head: str, pieces: list[str]) -> str:
     """Each piece in the places where text stands: a paragraph, a cell after a cell, the start of a row, an argument."""
     rows = "\n\n".join(
-        f"Q{piece}Q\\par\\begin{{tabular}}{{ll}}{piece}&{piece}\\\\{{}}{piece}&\\textbf{{{piece}}}\\end{{tabular}}"
+        f"Q{piece}Q\\par\\begin{{tabular}}{{ll}}{piece}&{piece}\\\\{piece}&\\textbf{{{piece}}}\\end{{tabular}}"
         for piece in pieces
     )
     return f"{head}\\begin{{document}}\\tiny\n{rows}\n\nThe end\\end{{document}}"
@@ -125,13 +125,27 @@ def test_composed_and_decomposed_text_print_alike() -> None:
     assert escape_tex("e\u0301") == escape_tex("é") == "é"
 
 
-def test_text_comes_back_from_the_page(tmp_path: Path) -> None:
-    """What pdfTeX prints can be searched and copied: dashes, quotes and brackets are not joined to other signs."""
-    text = "Żółć -- --- ,, !` << >> [x] 26 − 19.75 = 6.25 {a} ~ ^ \\ | #1 50% µ"
-    source = preamble("pdflatex", "a4", 10) + r"\begin{document}" + escape_tex(text) + r"\end{document}"
-    made = compile_tex(source, "back", tmp_path, "pdflatex")
+@pytest.mark.parametrize("engine", ["pdflatex", "lualatex"])
+def test_text_comes_back_from_the_page(engine: Engine, tmp_path: Path) -> None:
+    """What is printed can be searched and copied: dashes, quotes and brackets are not joined to other signs."""
+    text = "Żółć -- --- ,, !` ?` `` ` \"q\" << >> [x] 26 − 19.75 = 6.25 {a} ~ ^ \\ | #1 50% µ"
+    body = escape_tex(text, wide=engine == "lualatex")
+    source = preamble(engine, "a4", 10) + rf"\begin{{document}}{body}\end{{document}}"
+    made = compile_tex(source, "back", tmp_path, engine)
     back = PdfReader(made).pages[0].extract_text()
     assert "".join(back.split()) == "".join(text.split())
+
+
+def test_a_row_may_begin_with_a_star_or_a_bracket(tmp_path: Path) -> None:
+    """Both would be read as belonging to the end of the row before."""
+    rows = "\\\\".join(escape_tex(text) for text in ("first", "*star", "[5mm] room", "last"))
+    source = (
+        preamble("pdflatex", "a4", 10)
+        + rf"\begin{{document}}\begin{{tabular}}{{l}}{rows}\end{{tabular}}\end{{document}}"
+    )
+    text = PdfReader(compile_tex(source, "rows", tmp_path, "pdflatex")).pages[0].extract_text()
+    assert "*star" in text
+    assert "[5mm] room" in text
 
 
 def test_words_in_formulas_are_escaped(tmp_path: Path) -> None:
