@@ -50,39 +50,35 @@ class _Chain:
     Slips are bits of a number here: a set of them is one integer.
     """
 
-    __slots__ = ("_known", "_masks", "_practices", "_slips", "_values")
+    __slots__ = ("_nodes", "_practices", "_slips")
 
     def __init__(self, slips: Combination, practice: Practice, known: Known) -> None:
         self._slips = slips
         self._practices = _practices(slips, practice)
-        self._known = dict(known)
-        self._values: dict[tuple[Target, int], Value] = {}
-        self._masks: dict[Target, tuple[Quantity, int]] = {}
+        # What is known already is touched by no slip.
+        self._nodes = {target: (quantity(target.quantity), 0, {0: value}) for target, value in known}
 
     def value(self, target: Target, chosen: int) -> Value:
         """The target's value under the chosen slips. Raises ContentError where there is none."""
-        if target in self._known:
-            return self._known[target]
-        what, mask = self._masks.get(target) or self._masked(target)
+        what, mask, values = self._nodes.get(target) or self._node(target)
         chosen &= mask
-        key = (target, chosen)
-        found = self._values.get(key)
+        found = values.get(chosen)
         if found is None:
             practice = self._practices.get(chosen) or self._with_slips(chosen)
             inputs = tuple([self.value(need, chosen) for need in what.needs(target, practice)])
-            found = self._values[key] = what.value(target, practice, inputs)
+            found = values[chosen] = what.value(target, practice, inputs)
         return found
+
+    def _node(self, target: Target) -> tuple[Quantity, int, dict[int, Value]]:
+        above = upstream(target)
+        mask = sum(1 << at for at, slip in enumerate(self._slips) if slip.first & above)
+        made = self._nodes[target] = (quantity(target.quantity), mask, {})
+        return made
 
     def _with_slips(self, chosen: int) -> Practice:
         several = tuple(slip for at, slip in enumerate(self._slips) if chosen >> at & 1)
         made = self._practices[chosen] = applied(several, self._practices[0])
         return made
-
-    def _masked(self, target: Target) -> tuple[Quantity, int]:
-        above = upstream(target)
-        mask = sum(1 << at for at, slip in enumerate(self._slips) if slip.first & above)
-        kept = self._masks[target] = (quantity(target.quantity), mask)
-        return kept
 
 
 @functools.lru_cache(maxsize=64)
