@@ -124,7 +124,7 @@ def test_who_takes_inner_d_first_also_names_it() -> None:
     rules = practice(ion="inner d first", relaxation="one electron only")
     lost = {word: evaluate(target("first electron lost", word), rules).label for word in ("V", "Ca", "Yb")}
     assert lost == {"V": "3d", "Ca": "4s", "Yb": "6s"}
-    assert value("ionization energy", "V", rules) == -value("orbital energy", "V 3d")
+    assert value("ionization energy", "V", rules) == value("orbital energy", "V 3d").copy_negate()
 
 
 def test_a_stated_configuration_loses_its_own_electron() -> None:

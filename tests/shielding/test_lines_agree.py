@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from decimal import Decimal
+from decimal import ROUND_DOWN, Decimal, localcontext
 
 import pytest
 from hypothesis import given, settings
@@ -245,6 +245,17 @@ def test_notes_stand_on_the_line() -> None:
     assert not last_line("SCF charge", "Fe 4s").note
     assert "NIST" in last_line("measured ionization energy", "V").note
     assert "differ between tables" in last_line("atomic number from Kα", "S", energy="2307.2").note
+
+
+def test_values_do_not_hang_on_the_thread_s_decimal_context() -> None:
+    """A caller's precision changes no value of any quantity."""
+
+    def all_values() -> list[object]:
+        return [evaluate(target(name, words, **details), published()) for name, (words, details) in EXAMPLES.items()]
+
+    usual = all_values()
+    with localcontext(prec=9, rounding=ROUND_DOWN):
+        assert all_values() == usual
 
 
 def test_the_published_practice_is_the_default() -> None:

@@ -83,7 +83,7 @@ def _energy_line(
         ),
     ]
     if unit != "eV":
-        energy = Rounding(figures=5).apply(value * _scale(target))
+        energy = Rounding(figures=5).apply(EXACT.multiply(value, Decimal(_scale(target))))
         rest.append(("=", Measured(Num(shown(energy)), "eV")))
     rest.append(("=", Measured(Num(final), unit)))
     return Line(ENERGY.name, target.about, Chain(_E, tuple(rest)), value, final, unit, rounded=True)

@@ -40,7 +40,7 @@ def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Dec
     of, reference = inputs
     if not reference:
         raise ContentError(f"{target.get('from')} is 0 here, and nothing can be given in per cent of it")
-    return EXACT.multiply(Decimal(100), EXACT.divide(EXACT.subtract(of, reference), abs(reference)))
+    return EXACT.multiply(Decimal(100), EXACT.divide(EXACT.subtract(of, reference), reference.copy_abs()))
 
 
 def _line(target: Target, practice: Practice, inputs: tuple[Value, ...], value: Value, rounding: Rounding) -> Line:

@@ -51,7 +51,8 @@ def _charges(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> l
 def _value(target: Target, practice: Practice, inputs: tuple[Value, ...]) -> Decimal:
     total = Decimal("0.00")
     for group, charge in _charges(target, practice, inputs):
-        total = EXACT.add(total, group.electrons * electron_energy(charge, group.subshells[-1], practice))
+        energy = electron_energy(charge, group.subshells[-1], practice)
+        total = EXACT.add(total, EXACT.multiply(Decimal(group.electrons), energy))
     return in_unit(total, target.get("unit"))
 
 
