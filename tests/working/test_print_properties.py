@@ -7,7 +7,7 @@ import re
 import xml.etree.ElementTree as ET
 from fractions import Fraction as Ratio
 
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from authoring.working.latex import to_latex
@@ -32,7 +32,7 @@ def larger(inner: st.SearchStrategy[Node]) -> st.SearchStrategy[Node]:
     )
 
 
-TREES = st.recursive(NUMBERS, larger, max_leaves=8)
+TREES = st.recursive(NUMBERS, larger, max_leaves=6)
 
 
 def meaning(node: Node) -> Ratio:
@@ -89,6 +89,7 @@ def value(tree: ast.expr) -> Ratio:
     raise AssertionError(ast.dump(tree))
 
 
+@settings(max_examples=600, deadline=None)
 @given(TREES)
 def test_text_read_as_arithmetic_has_the_value_of_the_tree(node: Node) -> None:
     """Brackets stand wherever leaving them out would change the value, and two signs never meet."""
