@@ -8,7 +8,7 @@ from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Annotated, Any, Literal
 
-from pydantic import BeforeValidator, Field
+from pydantic import Field
 
 from authoring.faults import ContentError, Fault, FaultsFound, Source, UsageError
 from authoring.shielding.practice import Practice, published, with_convention
@@ -17,16 +17,15 @@ from authoring.specs.item import Item, read_item
 from authoring.specs.shipped import located
 from authoring.specs.validate import validated
 from authoring.specs.yaml_tree import Tree, read_tree
-from authoring.tasks.fields import Strict, Text, Word, YesNo, read_whole
+from authoring.tasks.fields import Between, Strict, Text, Word, YesNo
 
-Sized = Annotated[int, BeforeValidator(read_whole)]
 
 
 class LayoutFields(Strict):
     """How the sheets are laid out."""
 
     paper: Literal["A4", "Letter"] = Field("A4", description="the paper size")
-    type_size: Annotated[Sized, Field(ge=10, le=20)] = Field(11, alias="type", description="type size in pt, 10 to 20")
+    type_size: Annotated[int, Between(10, 20)] = Field(11, alias="type", description="type size in pt, 10 to 20")
     space: Literal["none", "narrow", "normal", "wide"] = Field("normal", description="room for answers")
     two_sided: YesNo = Field(False, alias="two-sided", description="each paper starts on a right-hand page")
     decimal: Literal["point", "comma"] = Field("point", description="the decimal mark")
@@ -50,7 +49,7 @@ class PlanFields(Strict):
     instructions: Text = Field("", description="instructions to candidates, in item text")
     items: tuple[Any, ...] = Field(min_length=1, max_length=60, description="the items, in order")
     conventions: dict[Word, Word] = Field(default_factory=dict, description="what the course does otherwise")
-    figures: Annotated[Sized, Field(ge=1, le=8)] | None = Field(
+    figures: Annotated[int, Between(1, 8)] | None = Field(
         None, description="significant figures of energies and sizes"
     )
     layout: LayoutFields = Field(default_factory=lambda: LayoutFields.model_validate({}), description="page and type")

@@ -7,10 +7,20 @@ the variant is known (`tasks/setting.py`).
 from __future__ import annotations
 
 import re
+from dataclasses import dataclass
 from decimal import Decimal, InvalidOperation
 from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, WithJsonSchema
+from pydantic import (
+    BaseModel,
+    BeforeValidator,
+    ConfigDict,
+    Field,
+    GetCoreSchemaHandler,
+    GetJsonSchemaHandler,
+    WithJsonSchema,
+)
+from pydantic_core import CoreSchema, core_schema
 
 _WHOLE = re.compile(r"[+-]?[0-9]{1,9}")
 
@@ -56,7 +66,22 @@ def read_several(value: Any) -> Any:
     return tuple(value) if isinstance(value, list) else value
 
 
-Whole = Annotated[int, BeforeValidator(read_whole), WithJsonSchema({"type": ["integer", "string"]})]
+@dataclass(frozen=True, slots=True)
+class Between:
+    """Metadata of a whole number with its bounds, both included; it is written as text or as a number."""
+
+    low: int
+    high: int
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
+        number = core_schema.int_schema(ge=self.low, le=self.high)
+        return core_schema.no_info_before_validator_function(read_whole, number)
+
+    def __get_pydantic_json_schema__(self, schema: CoreSchema, handler: GetJsonSchemaHandler) -> dict[str, Any]:
+        number = {"type": "integer", "minimum": self.low, "maximum": self.high}
+        return {"anyOf": [number, {"type": "string", "pattern": "^[+-]?[0-9]+$"}]}
+
+
 Number = Annotated[Decimal, BeforeValidator(read_decimal), WithJsonSchema({"type": ["number", "string"]})]
 YesNo = Annotated[bool, BeforeValidator(read_yes_no), WithJsonSchema({"enum": ["yes", "no", True, False]})]
 Text = Annotated[str, Field(max_length=20_000)]
@@ -92,12 +117,12 @@ class PartFields(Strict):
     """What every part takes, whatever its task."""
 
     ask: Several = Field((), description="the wording, instead of the default; several: one is chosen per variant")
-    marks: Annotated[int, BeforeValidator(read_whole), Field(ge=1, le=40)] | None = Field(
+    marks: Annotated[int, Between(1, 40)] | None = Field(
         None, description="marks of the part: one per step of the working, the weightiest steps first"
     )
     scheme: tuple[SchemeEntry, ...] = Field((), description="a mark scheme of the item's own")
     notes: Several = Field((), description="notes to markers")
-    space: Annotated[int, BeforeValidator(read_whole), Field(ge=0, le=60)] | None = Field(
+    space: Annotated[int, Between(0, 60)] | None = Field(
         None, description="ruled lines for the answer, instead of the default"
     )
 
@@ -111,9 +136,9 @@ class TargetFields(PartFields):
         default_factory=dict, alias="with", description="what else the quantity takes: stage, distance, …"
     )
     unit: Word | None = Field(None, description="the unit of the answer, where the quantity has several")
-    figures: Annotated[int, BeforeValidator(read_whole), Field(ge=1, le=8)] | None = Field(
+    figures: Annotated[int, Between(1, 8)] | None = Field(
         None, description="significant figures of the answer"
     )
-    places: Annotated[int, BeforeValidator(read_whole), Field(ge=0, le=6)] | None = Field(
+    places: Annotated[int, Between(0, 6)] | None = Field(
         None, description="decimal places of the answer"
     )

@@ -5,13 +5,13 @@ from __future__ import annotations
 from decimal import Decimal
 from typing import Annotated
 
-from pydantic import BeforeValidator, Field
+from pydantic import Field
 
 from authoring.faults import ContentError
 from authoring.shielding.quantity import PointRule, Quantity, Target, Value, quantity
 from authoring.shielding.solve import work
 from authoring.tasks.calculate import answer_of
-from authoring.tasks.fields import TargetFields, Word, Words, read_whole
+from authoring.tasks.fields import Between, TargetFields, Word, Words
 from authoring.tasks.points import MAIN, Candidate, pointed
 from authoring.tasks.setting import Setting, rounding_of, rounding_words, target_of
 from authoring.tasks.several import CHOICE, closing, measured, printed, scattered
@@ -30,7 +30,7 @@ class Select(TargetFields):
     """`select: screening constant`: the right answer among the answers of slips."""
 
     select: Word = Field(description="the quantity")
-    options: Annotated[int, BeforeValidator(read_whole), Field(ge=2, le=len(LETTERS))] = Field(
+    options: Annotated[int, Between(2, len(LETTERS))] = Field(
         4, description="how many options, the right one among them"
     )
     slips: Words = Field((), description="the slips whose answers are the wrong options; left out: the likeliest")
