@@ -1,0 +1,1 @@
+"""Stage 7, mark: scripts in, judgements out, the ledger that keeps them."""

@@ -1,0 +1,121 @@
+"""Stage 7, mark: a line as a candidate wrote it becomes a structure. Nothing is ever run as code.
+
+`read_line` takes any text and never raises; what cannot be read is kept as words, or as unreadable with a remark.
+"""
+
+from __future__ import annotations
+
+import re
+from dataclasses import replace
+from functools import lru_cache
+
+from authoring.marking.chains import read_chain, with_points
+from authoring.marking.forms import DecimalMark, Kind, Member, Written
+from authoring.marking.parse import Unreadable, check_bounds
+from authoring.marking.quick import read_quick
+from authoring.marking.statements import (
+    read_configuration,
+    read_groups,
+    read_name,
+    read_ordering,
+    read_tally,
+    split_about,
+)
+from authoring.marking.tidy import tidied, without_struck
+from authoring.marking.wording import as_words, has_words, read_worded
+
+__all__ = ["DecimalMark", "Kind", "Member", "Written", "read_line"]
+
+# A handwritten line has some 80 characters; this leaves room for a paragraph of reasons.
+MOST_CHARACTERS = 2000
+_SHORT = 200
+_REMEMBERED = 100_000
+
+_OK = frozenset(("ok", "ok.", "okay", "✓", "✔"))
+_BLANK = frozenset(("", "-", "--", "---", "...", "…"))
+_APART = re.compile(r";|,\s+(?=[A-Za-zσχμ][A-Za-z_*]{0,5}(?:\([^()]{1,8}\))?\s*[=≈])|\band\b(?=[^=]{1,12}=)")
+_MOST_STATEMENTS = 12
+
+
+def read_line(text: str, decimal: DecimalMark = "auto") -> Written:
+    """What a line says. `decimal`: which decimal mark the set uses; `auto` takes either."""
+    if len(text) > _SHORT:
+        return _read(text, decimal)
+    return _remembered(text, decimal)
+
+
+@lru_cache(maxsize=_REMEMBERED)
+def _remembered(text: str, decimal: DecimalMark) -> Written:
+    return _read(text, decimal)
+
+
+def _read(text: str, decimal: DecimalMark) -> Written:
+    if decimal != "comma" and (found := read_quick(text)) is not None:
+        return found
+    if len(text) > MOST_CHARACTERS:
+        shown = text[:80] + "…"
+        return Written(shown, "unreadable", remark=f"the line is longer than {MOST_CHARACTERS} characters")
+    kept, struck = without_struck(text)
+    plain = tidied(kept)
+    if plain in _BLANK:
+        return Written(text, "blank", struck=struck)
+    if plain.lower() in _OK:
+        return Written(text, "ok", struck=struck)
+    if plain[:1].isdigit() and (found := _quick_again(plain, decimal)) is not None:
+        return replace(found, text=text, struck=struck)
+    about, rest = split_about(plain)
+    found = _read_plain(rest, decimal)
+    return replace(
+        found, text=text, about=about or found.about, words=kept.strip() if found.words else "", struck=struck
+    )
+
+
+def _quick_again(plain: str, decimal: DecimalMark) -> Written | None:
+    """The plain forms once more, with one typography and decimal points."""
+    pointed, remark = with_points(plain, decimal)
+    found = read_quick(pointed)
+    return replace(found, remark=remark) if found is not None and remark else found
+
+
+def _read_plain(plain: str, decimal: DecimalMark) -> Written:
+    worded = has_words(plain)
+    try:
+        check_bounds(plain)
+    except Unreadable as error:
+        return replace(as_words(plain) if worded else Written(plain, "unreadable"), remark=str(error))
+
+    def read(piece: str) -> Written | None:
+        return _statement(piece, decimal) or read_chain(piece, decimal)
+
+    found = (
+        _several(plain, decimal)
+        or _statement(plain, decimal)
+        or (read_worded(plain, read) if worded else None)
+        or read_chain(plain, decimal)
+    )
+    if found is not None:
+        return found
+    return as_words(plain) if worded else Written(plain, "unreadable", remark="this could not be read")
+
+
+def _statement(plain: str, decimal: DecimalMark) -> Written | None:
+    """One statement that is no equation, without words around it."""
+    return (
+        read_name(plain)
+        or read_groups(plain)
+        or read_configuration(plain)
+        or read_ordering(plain, decimal)
+        or read_tally(plain, decimal)
+    )
+
+
+def _several(plain: str, decimal: DecimalMark) -> Written | None:
+    """Several equations on one line: the last, with the others before it."""
+    pieces = [piece.strip() for piece in _APART.split(plain)]
+    if not 2 <= len(pieces) <= _MOST_STATEMENTS:
+        return None
+    read = [read_chain(piece, decimal) for piece in pieces if piece]
+    found = tuple(each for each in read if each is not None)
+    if len(found) != len(read) or not found or any(each.label is None for each in found):
+        return None
+    return replace(found[-1], earlier=found[:-1])
