@@ -57,9 +57,9 @@ class ElectronDraw(Strict):
 class NumberDraw(Strict):
     """A number from an even row, ends included, or from a list."""
 
-    from_: Number | None = Field(None, alias="from")
-    to: Number | None = None
-    step: Number = Field("1", validate_default=True)
+    from_: Number | None = Field(None, alias="from", description="the first number")
+    to: Number | None = Field(None, description="the last number")
+    step: Number = Field("1", validate_default=True, description="the distance between numbers")
     numbers: Annotated[tuple[Number, ...], Field(description="the numbers to choose from")] = ()
 
 
