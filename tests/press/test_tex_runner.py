@@ -2,8 +2,13 @@
 
 from __future__ import annotations
 
+import os
+import signal
+import subprocess
+import threading
 import time
 from pathlib import Path
+from typing import Any
 
 import pytest
 from pypdf import PdfReader
@@ -77,6 +82,29 @@ def test_missing_engine_names_its_packages(engine: Engine, tmp_path: Path, monke
     assert find_engine(engine) is None
     with pytest.raises(OutsideError, match=r"apt install .*texlive-latex-recommended"):
         compile_tex(source, "paper", tmp_path, engine)
+
+
+@pytest.mark.parametrize("together", [False, True])
+def test_an_interrupt_leaves_no_process_behind(together: bool, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Ctrl-C ends TeX too, also where it runs beside another document."""
+    started: list[subprocess.Popen[bytes]] = []
+
+    class Watched(subprocess.Popen[bytes]):
+        def __init__(self, *args: Any, **options: Any) -> None:
+            super().__init__(*args, **options)
+            started.append(self)
+
+    monkeypatch.setattr("authoring.press.tex.subprocess.Popen", Watched)
+    job = Job(page("pdflatex", r"\def\a{\a}\a"), "loop", "pdflatex")
+    timer = threading.Timer(0.7, os.kill, (os.getpid(), signal.SIGINT))
+    timer.start()
+    with pytest.raises(KeyboardInterrupt):
+        if together:
+            compile_many([job, job], tmp_path, 30.0)
+        else:
+            compile_tex(job.source, job.name, tmp_path, job.engine, 30.0)
+    assert len(started) == (2 if together and (os.cpu_count() or 1) > 1 else 1)
+    assert all(process.wait(5) == -signal.SIGKILL for process in started)
 
 
 def test_missing_package_names_what_to_install() -> None:

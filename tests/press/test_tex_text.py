@@ -128,7 +128,7 @@ def test_composed_and_decomposed_text_print_alike() -> None:
 @pytest.mark.parametrize("engine", ["pdflatex", "lualatex"])
 def test_text_comes_back_from_the_page(engine: Engine, tmp_path: Path) -> None:
     """What is printed can be searched and copied: dashes, quotes and brackets are not joined to other signs."""
-    text = "Żółć -- --- ,, !` ?` `` ` \"q\" << >> [x] 26 − 19.75 = 6.25 {a} ~ ^ \\ | #1 50% µ"
+    text = 'Żółć -- --- ,, !` ?` `` ` "q" << >> [x] 26 − 19.75 = 6.25 {a} ~ ^ \\ | #1 50% µ'
     body = escape_tex(text, wide=engine == "lualatex")
     source = preamble(engine, "a4", 10) + rf"\begin{{document}}{body}\end{{document}}"
     made = compile_tex(source, "back", tmp_path, engine)

@@ -12,7 +12,19 @@ from hypothesis import strategies as st
 
 from authoring.working.latex import to_latex
 from authoring.working.mathml import math_element
-from authoring.working.nodes import Bracket, Fraction, Measured, Negative, Node, Num, Power, Product, Sum
+from authoring.working.nodes import (
+    Bracket,
+    Fraction,
+    Measured,
+    Negative,
+    Node,
+    Num,
+    Power,
+    Product,
+    Sum,
+    difference,
+    sum_of,
+)
 from authoring.working.text import to_text
 
 NUMBERS = st.sampled_from(["2", "3", "0.35", "−1.5", "-4", "11"]).map(Num)
@@ -26,6 +38,7 @@ def larger(inner: st.SearchStrategy[Node]) -> st.SearchStrategy[Node]:
         st.lists(inner, min_size=1, max_size=3).map(tuple).map(Product),
         st.builds(Fraction, inner, inner),
         st.builds(Power, inner, st.sampled_from(["2", "−1", "3"]).map(Num)),
+        st.builds(lambda a, b, c: difference(a, sum_of([b, c])), inner, inner, inner),
         inner.map(Negative),
         inner.map(Bracket),
         inner.map(lambda node: Measured(node, "")),
