@@ -11,7 +11,7 @@ from authoring.shielding.quantity import PointRule, Target, Value, quantity
 from authoring.shielding.solve import Step, evaluate, work
 from authoring.tasks.calculate import answer_of
 from authoring.tasks.fields import TargetFields, Words
-from authoring.tasks.points import Candidate, chosen
+from authoring.tasks.points import Candidate, chosen, numbered
 from authoring.tasks.setting import Setting
 from authoring.tasks.several import Things, joined, scattered, things
 from authoring.tasks.solved import Answer, BlankTable, Solved
@@ -23,7 +23,7 @@ from authoring.working.nodes import Words as WordsNode
 from authoring.working.numbers import Rounding
 
 MOST_CELLS = 60
-_ROMAN = ((10, "x"), (9, "ix"), (5, "v"), (4, "iv"), (1, "i"))
+_ROMAN = ((50, "l"), (40, "xl"), (10, "x"), (9, "ix"), (5, "v"), (4, "iv"), (1, "i"))
 
 Cell = tuple[int, int]
 
@@ -206,7 +206,7 @@ def solve(part: Complete, setting: Setting) -> Solved:
         ask=worded(part, setting.turn, _wording(columns, len(blanks))),
         steps=steps,
         answer=_answer(answers, labels),
-        points=chosen(candidates, steps, part.marks, part.scheme),
+        points=chosen(candidates, steps, part.marks, part.scheme) if part.scheme else numbered(candidates),
         space=space_for(steps) if part.space is None else part.space,
         exhibits=(_table(columns, filled, blanks),),
         notes=part.notes,

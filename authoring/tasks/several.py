@@ -164,11 +164,12 @@ def worked(compared: Things, setting: Setting) -> list[Step]:
 def rising(compared: Things, values: Mapping[Target, Decimal]) -> tuple[Target, ...]:
     """The things from the smallest value to the largest. ContentError for a tie, in value or as printed."""
     order = sorted(compared.targets, key=lambda target: values[target])
-    for one, other in itertools.pairwise(order):
-        if values[one] == values[other] or compared.printed(values[one]) == compared.printed(values[other]):
+    texts = [compared.printed(values[target]) for target in order]
+    for at, (one, other) in enumerate(itertools.pairwise(order)):
+        if values[one] == values[other] or texts[at] == texts[at + 1]:
             raise ContentError(
                 f"{compared.what.name} does not order {compared.label(one)} and {compared.label(other)}: "
-                f"both are {compared.printed(values[one])}"
+                f"both are {texts[at]}"
             )
     return tuple(order)
 
