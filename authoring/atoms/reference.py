@@ -190,12 +190,16 @@ def _ion_rows() -> Mapping[tuple[int, int], tuple[Any, ...]]:
     return {(row[0], row[1]): row for row in _rows("ionizationenergies")}
 
 
+# IUPAC's names (Red Book 2005, table I), where mendeleev has the other accepted spelling.
+_NAMES = {"Aluminum": "Aluminium", "Cesium": "Caesium"}
+
+
 def _element(row: tuple[Any, ...]) -> ElementData:
     z, symbol, name, period, group, block, weight, configuration, radius = row
     return ElementData(
         z,
         symbol,
-        name,
+        _NAMES.get(name, name),
         period,
         group,
         block,

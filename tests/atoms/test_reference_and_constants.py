@@ -35,7 +35,9 @@ def test_elements_equal_mendeleevs_own_table(tables) -> None:  # type: ignore[no
     for row in frame.to_dict("records"):
         one = reference.elements().by_z[row["atomic_number"]]
         assert reference.elements().by_symbol[row["symbol"]] is one
-        assert (one.name, one.period, one.block) == (row["name"], row["period"], row["block"])
+        # IUPAC Red Book 2005, table I, has aluminium and caesium.
+        name = {"Aluminum": "Aluminium", "Cesium": "Caesium"}.get(row["name"], row["name"])
+        assert (one.name, one.period, one.block) == (name, row["period"], row["block"])
         assert one.group == (None if row["group_id"] != row["group_id"] else row["group_id"])
         assert float(one.weight) == row["atomic_weight"]
         assert one.configuration == Configuration.parse(row["electronic_configuration"])
