@@ -5,6 +5,7 @@ from __future__ import annotations
 import xml.etree.ElementTree as ET
 from decimal import Decimal
 from pathlib import Path
+from typing import Any
 
 import pytest
 from pypdf import PdfReader
@@ -59,11 +60,11 @@ def test_latex_fits_the_page_and_shows_all(engine: Engine, paper: str, tmp_path:
         f"{head}\\overfullrule=5pt\\hbadness=1\\begin{{document}}\n{periodic_definition(engine)}{use}\\end{{document}}"
     )
     made = compile_tex(source, "table", tmp_path, engine)
-    reader = PdfReader(made)
+    reader: Any = PdfReader(made)
     assert len(reader.pages) == 3
     forms = [page["/Resources"]["/XObject"] for page in reader.pages]
     (form,) = {reference.idnum for page in forms for reference in dict.values(page)}
-    left, bottom, right, top = (float(value) for value in reader.get_object(form)["/BBox"])  # type: ignore[index]
+    left, bottom, right, top = (float(value) for value in reader.get_object(form)["/BBox"])
     text_width = (210 - 44 if paper == "a4" else 215.9 - 44) * 72 / 25.4
     assert right - left < text_width + 0.5
     assert top - bottom < text_width
