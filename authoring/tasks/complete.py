@@ -256,7 +256,7 @@ def _head(column: Things) -> Node:
 
 def _wording(columns: Sequence[Things], count: int) -> str:
     first = columns[0]
-    names = joined([column.what.name for column in columns])
+    names = joined([column.measure for column in columns])
     if first.by_electron:
         about = f"the electrons of {species_words(first.targets[0].species)}"
     else:
@@ -264,7 +264,8 @@ def _wording(columns: Sequence[Things], count: int) -> str:
         if any("electron" in column.what.takes for column in columns):
             electron = next(column.targets[0].electron for column in columns if "electron" in column.what.takes)
             about = f"{electron_words(electron)} of each species"
-    which = "the blank (i)" if count == 1 else f"the blanks (i) to ({roman(count)})"
+    to = "and" if count == 2 else "to"
+    which = "the blank (i)" if count == 1 else f"the blanks (i) {to} ({roman(count)})"
     return f"The table is about {about}: {names}. Complete {which}."
 
 

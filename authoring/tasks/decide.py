@@ -112,7 +112,7 @@ def _wording(compared: Things, which: str) -> str:
         pair = f"{species_words(one.species)} or {species_words(other.species)}"
         if "electron" in compared.what.takes:
             pair += f" (for {electron_words(one.electron)} of each)"
-    return f"Decide which has the {which} {compared.what.name}: {pair}. Give the reason."
+    return f"Decide which has the {which} {compared.measure}: {pair}. Give the reason."
 
 
 TASK = Task(

@@ -103,7 +103,7 @@ def solve(part: Identify, setting: Setting) -> Solved:
     ]
     species = target.species
     value = f"{answer.shown} {answer.unit}".strip()
-    shown = f"`{value}`" if answer.kind == "configuration" else value
+    shown = f"`{value}`" if answer.kind in ("configuration", "groups", "electron") else value
     return Solved(
         task="identify",
         quantity=what.name,
@@ -133,10 +133,8 @@ def _closing(compared: Things, target: Target, values: Mapping[Target, Value], s
 
 
 def _wording(compared: Things, target: Target, value: str) -> str:
-    about = compared.what.name
-    if "electron" in compared.what.takes:
-        about += f" for {electron_words(target.electron)}"
-    return f"For one of {listed(compared)}, the {about} is {value}. Identify it, and show how you know."
+    where = f" for {electron_words(target.electron)}" if "electron" in compared.what.takes else ""
+    return f"One of {listed(compared)} has the {compared.measure} {value}{where}. Identify it, and show how you know."
 
 
 def _wrong(

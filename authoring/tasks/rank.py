@@ -81,9 +81,9 @@ def _wording(compared: Things, order: str) -> str:
     names = joined([compared.words(target) for target in compared.targets])
     if compared.by_electron:
         which = f"the {names} electrons{compared.of_each()}"
-        return f"Rank {which} in order of {order} {compared.what.name}. Show your working."
+        return f"Rank {which} in order of {order} {compared.measure}. Show your working."
     where = f"{compared.of_each().removesuffix(',')}"
-    return f"Rank {names} in order of {order} {compared.what.name}{where}. Show your working."
+    return f"Rank {names} in order of {order} {compared.measure}{where}. Show your working."
 
 
 TASK = Task(

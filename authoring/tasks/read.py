@@ -125,7 +125,7 @@ class _Charted:
         """The chart."""
         compared = self.things
         unit = compared.unit
-        about = compared.what.name
+        about = compared.measure
         if compared.by_electron:
             about += compared.of_each()
         elif "electron" in compared.what.takes:
@@ -160,7 +160,7 @@ def _value(part: Read, setting: Setting, chart: _Charted) -> Solved:
     unit = compared.unit
     answer = Answer("number", chart.read(target), node, exact, unit, accepted=(low, high))
     note = f"Accept from {shown(low)} to {shown(high)}" + (f" {unit}." if unit else ".")
-    wording = f"Read the {compared.what.name} of {_thing(compared, target)} off the chart."
+    wording = f"Read the {compared.measure} of {_thing(compared, target)} off the chart."
     return _solved(part, setting, chart, target, Chain(name, (("≈", node),)), answer, wording, note)
 
 
@@ -178,9 +178,9 @@ def _extreme(part: Read, setting: Setting, chart: _Charted) -> Solved:
     kind: Literal["electron", "species"] = "electron" if compared.by_electron else "species"
     answer = Answer(kind, compared.label(target), compared.node(target), compared.value(target))
     if compared.by_electron:
-        wording = f"Which electron on the chart has the {part.find} {compared.what.name}?"
+        wording = f"Which electron on the chart has the {part.find} {compared.measure}?"
     else:
-        wording = f"Which species on the chart has the {part.find} {compared.what.name}?"
+        wording = f"Which species on the chart has the {part.find} {compared.measure}?"
     return _solved(part, setting, chart, target, chain, answer, wording)
 
 
@@ -209,7 +209,7 @@ def _jump(part: Read, setting: Setting, chart: _Charted) -> Solved:
     answer = Answer("order", text, pair, (compared.value(before), compared.value(after)))
     what = "electrons" if compared.by_electron else "species"
     verb = "fall" if sign < 0 else "rise"
-    wording = f"Between which two neighbouring {what} on the chart does the {compared.what.name} {verb} most?"
+    wording = f"Between which two neighbouring {what} on the chart does the {compared.measure} {verb} most?"
     return _solved(part, setting, chart, after, chain, answer, wording)
 
 

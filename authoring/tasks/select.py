@@ -79,7 +79,7 @@ def place(part: Select, setting: Setting) -> int:
 
 
 def solve(part: Select, setting: Setting) -> Solved:
-    """The right answer at its place, the others in ascending order."""
+    """The right answer at its place, the options in ascending order, turned round to bring it there."""
     target = target_of(part.select, part, setting)
     what = quantity(target.quantity)
     rounding = rounding_of(what, part, setting)
@@ -89,10 +89,10 @@ def solve(part: Select, setting: Setting) -> Solved:
     right = answer_of(steps[-1], what)
     chosen, everyone = distractors(target, right, part, setting, rounding)
     at = place(part, setting)
-    rows: list[tuple[Answer, tuple[str, ...]]] = [
-        (answer, (name,)) for answer, name in sorted(chosen, key=lambda each: _size(each[0], what))
-    ]
-    rows.insert(at, (right, ()))
+    rows = sorted([(right, ()), *((answer, (name,)) for answer, name in chosen)], key=lambda each: _size(each[0], what))
+    # In ascending order from some option on, and on from the first again: no option stands out.
+    start = rows.index((right, ())) - at
+    rows = rows[start:] + rows[:start]
     options = tuple(
         Option(LETTERS[index], answer.node, f"{answer.shown} {answer.unit}".strip(), names)
         for index, (answer, names) in enumerate(rows)
@@ -101,7 +101,8 @@ def solve(part: Select, setting: Setting) -> Solved:
     letter = WordsNode(LETTERS[at])
     choice = closing(CHOICE, target, Chain(right.node, (("→", letter),)), LETTERS[at], LETTERS[at])
     steps = (*steps, choice)
-    wording = asked(what.ask, target)
+    # A choice of one letter leaves no room for a reason.
+    wording = asked(what.ask, target).replace(", and give the reason", "")
     if steps[-2].line.rounded:
         wording += f" The answers are given {rounding_words(rounding)}."
     rule = PointRule("B", f"option {LETTERS[at]}", "choice", 2 * MAIN)

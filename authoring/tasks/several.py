@@ -16,7 +16,7 @@ from authoring.shielding.quantity import Quantity, Target, Value, quantity
 from authoring.shielding.solve import Step, evaluate, work
 from authoring.tasks.fields import TargetFields
 from authoring.tasks.setting import Setting, details_of, electron_named, must_have, rounding_of, species_named
-from authoring.tasks.wording import electron_words, species_words
+from authoring.tasks.wording import electron_words, measure_words, species_words
 from authoring.working.lines import Line
 from authoring.working.nodes import Chain, Function, Measured, Node, Num, Occupied, Relation
 from authoring.working.numbers import Rounding, shown
@@ -42,6 +42,11 @@ class Things:
         if self.by_electron and target.electron is not None:
             return f"`{target.electron.label}`"
         return species_words(target.species)
+
+    @property
+    def measure(self) -> str:
+        """The quantity in a sentence."""
+        return measure_words(self.targets[0])
 
     def node(self, target: Target) -> Node:
         """A thing as a node."""

@@ -42,13 +42,23 @@ def worded(part: PartFields, turn: int, wording: str) -> str:
     return part.ask[turn % len(part.ask)] if part.ask else wording
 
 
+def measure_words(target: Target) -> str:
+    """A quantity as it stands in a sentence: `ionization energy (stage 2)`, `number of unpaired electrons`."""
+    name = quantity(target.quantity).name
+    if name.endswith(" electrons"):
+        name = f"number of {name}"
+    # The unit and the form of an answer show in the answer.
+    details = ", ".join(f"{key} {text}" for key, text in target.detail if key not in ("unit", "form"))
+    return f"{name} ({details})" if details else name
+
+
 def noun(target: Target) -> str:
-    """`the effective nuclear charge felt by a `4s` electron of vanadium`."""
+    """`the effective nuclear charge for a `4s` electron of vanadium`."""
     what = quantity(target.quantity)
     where = f"of {species_words(target.species)}"
     if "electron" in what.takes:
         where = f"for {electron_words(target.electron)} {where}"
-    return f"the {what.name} {where}"
+    return f"the {measure_words(target)} {where}"
 
 
 def space_for(steps: tuple[Step, ...]) -> int:

@@ -92,7 +92,7 @@ def test_what_is_not_of_an_electron_takes_none() -> None:
 def test_the_species_of_a_value_is_identified() -> None:
     part = solved(IDENTIFY + "  of: V\n  electron: 3d\n  among: Sc-Zn\n")
     assert part.ask == (
-        "For one of the elements from scandium to zinc, the effective nuclear charge for a `3d` electron is 4.30. "
+        "One of the elements from scandium to zinc has the effective nuclear charge 4.30 for a `3d` electron. "
         "Identify it, and show how you know."
     )
     assert part.answer.value == Species.parse("V")
@@ -152,3 +152,12 @@ def test_a_slip_leads_to_another_species() -> None:
     assert part.answer.shown == "Cr"
     assert part.given == (("effective nuclear charge", "2.95"),)
     assert wrongs(part)["self counted"] == "V"
+
+
+def test_the_wording_names_what_the_quantity_is_of() -> None:
+    part = solved("- rank: measured ionization energy\n  among: [Na, Mg, Al]\n  with: {stage: 2}\n")
+    assert "increasing measured ionization energy (stage 2)" in part.ask
+    # NIST: 47.29, 15.04 and 18.83 eV
+    assert part.answer.shown == "Mg < Al < Na"
+    counted = solved("- decide: unpaired electrons\n  between: [Mn, V]\n")
+    assert "the larger number of unpaired electrons: manganese or vanadium" in counted.ask
