@@ -41,6 +41,7 @@ def test_the_pages_look_the_same(tmp_path: Path) -> None:
     """Content streams are the same bytes, and fonts are embedded."""
     source = whole(tmp_path)
     (made,) = split_pdf(source, {"x": (2, 2)}, tmp_path)
+    old: Any
     new: Any
     old, new = PdfReader(source).pages[1], PdfReader(made).pages[0]
     assert old.get_contents().get_data() == new.get_contents().get_data()
