@@ -11,7 +11,7 @@ from authoring.atoms.subshell import Subshell
 from authoring.faults import ContentError
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.configuration import configuration_of
-from authoring.shielding.quantity import Quantity, Target, Value, quantity
+from authoring.shielding.quantity import Quantity, Target, Value, quantities, quantity
 from authoring.shielding.solve import Step
 from authoring.slips.catalogue import Slips, shipped
 from authoring.tasks.fields import TargetFields
@@ -38,8 +38,9 @@ class Setting:
 
     @property
     def known(self) -> dict[Target, Value]:
-        """The values that earlier parts have worked out: not worked again."""
-        return {step.target: step.line.value for part in self.earlier for step in part.steps}
+        """The values that earlier parts have worked out: not worked again. Closing lines state no quantity."""
+        steps = (step for part in self.earlier for step in part.steps)
+        return {step.target: step.line.value for step in steps if step.target.quantity in quantities()}
 
     @property
     def had(self) -> tuple[Step, ...]:
