@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from typing import Annotated, Any, Literal
 
-from pydantic import BeforeValidator, Field
+from pydantic import Field, GetCoreSchemaHandler, GetJsonSchemaHandler
+from pydantic_core import CoreSchema, core_schema
 
 from authoring.faults import ContentError
 from authoring.shielding.quantity import PointRule
@@ -31,15 +32,25 @@ def _as_point(value: Any) -> Any:
     return {"point": value} if isinstance(value, str) else value
 
 
+class _OrText:
+    """Metadata of a rubric's entry: a text alone is a point."""
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
+        return core_schema.no_info_before_validator_function(_as_point, handler(source))
+
+    def __get_pydantic_json_schema__(self, schema: CoreSchema, handler: GetJsonSchemaHandler) -> dict[str, Any]:
+        return {"anyOf": [handler(schema), {"type": "string"}]}
+
+
 class Explain(PartFields):
     """`explain: why …`, with what earns each mark under `rubric`, and what does not under `not`."""
 
     explain: Annotated[str, Field(min_length=1, max_length=2_000)] = Field(
         description="what is to be explained, as it goes on after the word Explain"
     )
-    rubric: Annotated[
-        tuple[Annotated[RubricPoint, BeforeValidator(_as_point)], ...], Field(min_length=1, max_length=20)
-    ] = Field(description="one entry a mark: a text, or `point` and `mark`")
+    rubric: Annotated[tuple[Annotated[RubricPoint, _OrText()], ...], Field(min_length=1, max_length=20)] = Field(
+        description="one entry a mark: a text, or `point` and `mark`"
+    )
     not_: Several = Field((), alias="not", description="what earns no mark, though it may be met")
     model: Text = Field("", description="a model answer; left out: the points of the rubric")
 

@@ -4,13 +4,16 @@ from __future__ import annotations
 
 from decimal import Decimal
 
+import jsonschema
 import pytest
+import yaml
 from tasks_help import codes, in_a_row, solved
 
 from authoring.faults import ContentError
 from authoring.tasks.complete import roman
 from authoring.tasks.read import reading_tolerance
 from authoring.tasks.solved import BlankTable, Chart, Solved
+from authoring.tasks.task import tasks
 from authoring.working.text import to_text
 
 COMPLETE = "- complete: [S, Z_eff]\n  of: V\n  rows: [4s, 3d]\n"
@@ -159,6 +162,14 @@ def test_an_explanation_is_marked_by_its_rubric(more: str) -> None:
 def test_a_rubric_without_points_is_refused(text: str) -> None:
     with pytest.raises(ValueError):
         solved(text)
+
+
+def test_the_schema_allows_a_rubric_of_texts() -> None:
+    schema = tasks()["explain"].fields.model_json_schema(by_alias=True)
+    example = yaml.load(tasks()["explain"].example, yaml.BaseLoader)[0]
+    jsonschema.validate(example, schema)
+    with pytest.raises(jsonschema.ValidationError):
+        jsonschema.validate({**example, "rubric": [["a"]]}, schema)
 
 
 def test_a_value_is_read_as_closely_as_the_chart_allows() -> None:
