@@ -1,0 +1,54 @@
+"""Stage 8, mark: the terms of a sum as a candidate wrote them, held against a tally."""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterable
+from decimal import Decimal
+
+from authoring.marking.expression import Term
+from authoring.shielding.screening import Share
+
+Counts = dict[Decimal, Decimal]
+
+_ONE = Decimal(1)
+
+
+def counts_of_shares(shares: Iterable[Share]) -> Counts:
+    """Electrons per coefficient, terms that add nothing left out."""
+    found: Counter[Decimal] = Counter()
+    for share in shares:
+        if share.count and share.coefficient:
+            found[share.coefficient.normalize()] += share.count  # type: ignore[assignment]
+    return {coefficient: Decimal(count) for coefficient, count in found.items()}
+
+
+def counts_of_terms(terms: Iterable[Term]) -> Counts:
+    """Electrons per coefficient as written; equal coefficients together, in any order."""
+    found: dict[Decimal, Decimal] = {}
+    for term in terms:
+        if term.product:
+            key = term.coefficient.normalize()
+            found[key] = found.get(key, Decimal(0)) + term.count
+    return {coefficient: count for coefficient, count in found.items() if count}
+
+
+def products_of(terms: Iterable[Term]) -> Counter[Decimal]:
+    """The products as written, for sums whose products are already worked out."""
+    return Counter(term.product.normalize() for term in terms if term.product)
+
+
+def same_tally(terms: tuple[Term, ...], shares: tuple[Share, ...]) -> bool:
+    """Whether a sum as written is that tally: the same counts at the same coefficients, or the same products."""
+    wanted = counts_of_shares(shares)
+    if counts_of_terms(terms) == wanted:
+        return True
+    products = Counter((coefficient * count).normalize() for coefficient, count in wanted.items())
+    return products_of(terms) == products
+
+
+def looks_like_tally(terms: tuple[Term, ...]) -> bool:
+    """Whether a sum could be a tally: more than one term, or a count times a coefficient; nothing negative."""
+    if not terms or any(term.product < 0 for term in terms):
+        return False
+    return len(terms) > 1 or terms[0].coefficient != _ONE

@@ -1,0 +1,245 @@
+"""Files of scripts: what is read, where it stands, and that a broken entry costs only itself."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from authoring.faults import UsageError
+from authoring.marking.scripts import (
+    Script,
+    canonical_label,
+    parse_scripts,
+    read_scripts,
+    resolve_label,
+    write_blank_form,
+)
+
+GOOD = """\
+- paper: K7QD2
+  candidate: c-014
+  a: 0.35 + 11*0.85 + 10 = 19.70      # as written
+  b:
+    - S = 19.70
+    - Z = 23
+  c: 4s, because its effective charge is lower
+- paper: M31TX
+  a: ok
+  b: |
+    first
+    second
+  c: No
+"""
+
+
+def answers(script: Script) -> dict[str, list[str]]:
+    """The texts of a script."""
+    return {label: [line.text for line in lines] for label, lines in script.answers.items()}
+
+
+def test_lines_are_text_with_their_places() -> None:
+    """`No` stays text; a list and a block are several lines."""
+    found = parse_scripts(GOOD, "pile.yaml")
+    assert not found.faults
+    first, second = found.scripts
+    assert (first.paper, first.candidate) == ("K7QD2", "c-014")
+    assert answers(first) == {
+        "a": ["0.35 + 11*0.85 + 10 = 19.70"],
+        "b": ["S = 19.70", "Z = 23"],
+        "c": ["4s, because its effective charge is lower"],
+    }
+    assert answers(second) == {"a": ["ok"], "b": ["first", "second"], "c": ["No"]}
+    assert str(first.answers["b"][1].source) == "pile.yaml:6:7"
+    assert str(second.answers["b"][1].source) == "pile.yaml:12:5"
+    assert str(second.source) == "pile.yaml:8:3"
+
+
+BROKEN = """\
+- paper: AAAAA
+  a: 3.30
+- paper: BBBBB
+    a: 'never closed
+   b: x
+- paper: CCCCC
+  a: 4.15
+"""
+
+
+def test_a_broken_entry_costs_only_itself() -> None:
+    """The fault stands in the broken entry; what is before and after is read."""
+    found = parse_scripts(BROKEN, "pile.yaml")
+    assert [script.paper for script in found.scripts] == ["AAAAA", "CCCCC"]
+    assert found.faults
+    assert all(fault.source is not None and 3 <= fault.source.line <= 5 for fault in found.faults)
+    assert str(found.scripts[1].answers["a"][0].source) == "pile.yaml:7:6"
+
+
+def test_lines_that_are_no_yaml_are_taken_as_they_stand() -> None:
+    """Handwriting begins with brackets and signs; a transcriber need not know YAML's quotes."""
+    text = "- paper: A\n  a: [Ar] 3d3 4s2   # good\n  b: -\n  c: so: 3.30\n  d:\n    - x: 1\n    - [Ne] 3s1\n"
+    found = parse_scripts(text, "pile.yaml")
+    assert not found.faults
+    (script,) = found.scripts
+    assert answers(script) == {
+        "a": ["[Ar] 3d3 4s2"],
+        "b": ["-"],
+        "c": ["so: 3.30"],
+        "d": ["x: 1", "[Ne] 3s1"],
+    }
+    assert str(script.answers["a"][0].source) == "pile.yaml:2:6"
+
+
+def test_brackets_that_are_yaml_by_accident_stay_text() -> None:
+    """`[Ar]` is a core, not a list."""
+    found = parse_scripts("- paper: A\n  a: [Ar]\n  b: 3.30\n", "pile.yaml")
+    assert answers(found.scripts[0]) == {"a": ["[Ar]"], "b": ["3.30"]}
+
+
+@pytest.mark.parametrize(
+    ("text", "code"),
+    [
+        ("", "scripts-none"),
+        ("paper: A\n", "scripts-list"),
+        ("- A\n", "script-entry"),
+        ("- a: 3\n", "script-paper"),
+        ("- paper: [A, B]\n  a: 3\n", "script-entry"),
+        ("- paper: A\n  papre: 3\n", "script-label"),
+        ("- paper: A\n  1a: 3\n  1A: 4\n", "script-label"),
+        ("- paper: A\n  a:\n    b: 4\n", "script-lines"),
+        ("- paper: A\n  a: 3\n  a: 4\n", "yaml-duplicate-key"),
+        ("- paper: A\n  a: \x07\n", "control-character"),
+    ],
+)
+def test_every_mistake_is_a_fault_at_its_place(text: str, code: str) -> None:
+    """With a line that exists."""
+    faults = parse_scripts(text, "pile.yaml").faults
+    assert code in [fault.code for fault in faults]
+    assert all(fault.source is not None and fault.source.line <= text.count("\n") + 1 for fault in faults)
+
+
+def test_the_same_paper_twice_is_kept_twice() -> None:
+    """Which counts is the caller's question."""
+    found = parse_scripts("- paper: A\n  a: 1\n- paper: A\n  a: 2\n", "pile.yaml")
+    assert [answers(script)["a"] for script in found.scripts] == [["1"], ["2"]]
+
+
+@pytest.mark.parametrize(
+    ("text", "label"),
+    [
+        ("a", "a"),
+        ("A", "a"),
+        ("(b)", "b"),
+        ("2b", "2b"),
+        ("2(b)", "2b"),
+        ("2 b", "2b"),
+        ("3", "3"),
+        ("x1", None),
+        ("", None),
+    ],
+)
+def test_labels(text: str, label: str | None) -> None:
+    """Question number and letter."""
+    assert canonical_label(text) == label
+
+
+@pytest.mark.parametrize(
+    ("label", "known", "expected"),
+    [
+        ("2b", ("1a", "2b"), "2b"),
+        ("a", ("1a", "1b"), "1a"),
+        ("a", ("1a", "2a"), None),
+        ("1a", ("a", "b"), "a"),
+        ("12a", ("a", "b"), None),
+        ("3", ("1a", "3a"), "3a"),
+        ("c", ("a", "b"), None),
+    ],
+)
+def test_labels_of_a_paper(label: str, known: tuple[str, ...], expected: str | None) -> None:
+    """A short label is taken where it can mean only one part."""
+    assert resolve_label(label, known) == expected
+
+
+@pytest.mark.parametrize("mark", [",", ";", "\t"])
+def test_a_table_of_final_answers(tmp_path: Path, mark: str) -> None:
+    """A row a paper, whatever the spreadsheet puts between the cells."""
+    rows = [["paper", "candidate", "1a", "1b"], ["A", "c1", "19.70", '"3.30 = x"'], ["B", "c2", "", "ok"]]
+    path = tmp_path / "answers.csv"
+    path.write_text("\n".join(mark.join(row) for row in rows) + "\n", encoding="utf-8")
+    found = read_scripts(path)
+    assert not found.faults
+    assert [(script.paper, script.candidate, answers(script)) for script in found.scripts] == [
+        ("A", "c1", {"1a": ["19.70"], "1b": ["3.30 = x"]}),
+        ("B", "c2", {"1a": [""], "1b": ["ok"]}),
+    ]
+    assert found.scripts[1].answers["1b"][0].source.line == 3
+
+
+@pytest.mark.parametrize(
+    ("text", "code"),
+    [
+        ("", "scripts-none"),
+        ("papre,1a\nA,3\n", "csv-column"),
+        ("paper,1a,1a\nA,3,4\n", "csv-column"),
+        ("candidate,1a\nA,3\n", "csv-column"),
+        ("paper,1a\nA,3,4\n", "csv-row"),
+        ("paper,1a\n,3\n", "script-paper"),
+        ('paper,1a\nA,"3\n', "csv-syntax"),
+        ('paper,1a\nA,"3"x\nB,4\n', "csv-syntax"),
+    ],
+)
+def test_every_mistake_in_a_table_is_a_fault(tmp_path: Path, text: str, code: str) -> None:
+    """At a line that exists."""
+    path = tmp_path / "answers.csv"
+    path.write_text(text, encoding="utf-8")
+    faults = read_scripts(path).faults
+    assert code in [fault.code for fault in faults]
+    assert all(fault.source is not None and fault.source.line <= text.count("\n") + 1 for fault in faults)
+
+
+def test_a_blank_form_reads_back_blank() -> None:
+    """Every paper and part stands in it once, without a word."""
+    form = write_blank_form([("K7QD2", ("1a", "1b")), ("12E45", ("1a",))], {"K7QD2": "c: 14"})
+    found = parse_scripts(form, "form.yaml")
+    assert not found.faults
+    assert [(script.paper, script.candidate, answers(script)) for script in found.scripts] == [
+        ("K7QD2", "c: 14", {"1a": [""], "1b": [""]}),
+        ("12E45", "", {"1a": [""]}),
+    ]
+
+
+def test_files_that_cannot_be_read(tmp_path: Path) -> None:
+    """Missing: wrong usage. Not UTF-8: a fault."""
+    with pytest.raises(UsageError):
+        read_scripts(tmp_path / "none.yaml")
+    path = tmp_path / "pile.yaml"
+    path.write_bytes(b"- paper: A\n  a: \xff\n")
+    assert [fault.code for fault in read_scripts(path).faults] == ["not-utf8"]
+
+
+PIECES = st.sampled_from(
+    ["- paper: A\n", "  a: 3.30\n", "  b: [Ar] 3d3\n", "  c: 'x\n", "- ", "\n", "  1a:\n    - x\n", "\t", "{", "&a ",
+     "  d: |\n    x\n", ": ", "#", "- - -\n", "---\n", "\x00", "  paper: B\n", "'", '"', "  a: y\n", "!x "]
+)  # fmt: skip
+
+
+@given(st.lists(PIECES, max_size=25).map("".join))
+def test_no_file_stops_the_reader(text: str) -> None:
+    """Whatever the file, there is a result, and every place in it can be shown."""
+    for name in ("pile.yaml",):
+        found = parse_scripts(text, name)
+        for script in found.scripts:
+            assert script.paper
+            for lines in script.answers.values():
+                assert all(line.source.line <= text.count("\n") + 1 for line in lines)
+
+
+@given(st.text(alphabet='paper,1ab;"\n\t x', max_size=60))
+def test_no_table_stops_the_reader(text: str) -> None:
+    """The same for tables."""
+    from authoring.marking.script_table import parse_table
+
+    found = parse_table(text, "answers.csv")
+    assert all(fault.source is not None for fault in found.faults)
