@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
-from typing import Literal, Protocol
+from typing import Protocol
 
 from markupsafe import Markup
 
+from authoring.faults import ContentError
 from authoring.press.chart import drawing
 from authoring.press.chart_latex import chart_latex
 from authoring.press.chart_svg import chart_svg
@@ -16,14 +17,20 @@ from authoring.press.environment import Tex
 from authoring.tasks.solved import Chart
 from authoring.working.latex import to_latex
 from authoring.working.mathml import NAMESPACE, escape_xml, math_element
-from authoring.working.nodes import Chain, Inline, Node, Prose, Relation
+from authoring.working.nodes import Chain, Inline, Node, Prose, Words
 from authoring.working.prose_html import inline_html, prose_html
 from authoring.working.prose_latex import inline_latex, prose_latex
-from authoring.working.tex_escape import escape_tex
+from authoring.working.tex_escape import escape_tex, needs_wide
 
-Decimal = Literal[".", ","]
-# A formula may break after a relation; TeX does so by itself, HTML needs to be told.
+# Left out of MathML inside HTML, which needs none; a class of a thousand has a hundred thousand formulas.
 _XMLNS = f' xmlns="{NAMESPACE}"'
+
+
+class NeedsWide(ContentError):
+    """A text that pdfTeX's fonts cannot print: the document is made again for LuaTeX."""
+
+    def __init__(self, text: str) -> None:
+        super().__init__("this text needs LuaTeX to be printed", text)
 
 
 class Medium(Protocol):
@@ -56,6 +63,17 @@ class Medium(Protocol):
 
 
 _DIGIT_POINT = re.compile(r"(?<=\d)\.(?=\d)")
+NOTHING = Words("")
+
+
+def parted(chain: Chain) -> tuple[Node | None, Node]:
+    """What stands before the first relation (with a colon that follows it), and the rest."""
+    if not chain.rest:
+        return None, chain.first
+    relation, after = chain.rest[0]
+    if relation == ":":
+        return Chain(chain.first, ((":", NOTHING),)), Chain(after, chain.rest[1:])
+    return chain.first, Chain(NOTHING, chain.rest)
 
 
 def with_decimal(text: str, decimal: str) -> str:
@@ -72,6 +90,8 @@ class TexMedium:
 
     def text(self, text: str) -> Markup:
         """Plain text, escaped."""
+        if not self.wide and not text.isascii() and needs_wide(text):
+            raise NeedsWide(text)
         return Tex(escape_tex(text, self.wide))
 
     def number(self, text: str) -> Markup:
@@ -80,32 +100,34 @@ class TexMedium:
 
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""
-        return Tex(prose_latex(prose, decimal=self.decimal, wide=self.wide))
+        return self._printed(lambda: prose_latex(prose, decimal=self.decimal, wide=self.wide))
 
     def inline(self, children: Iterable[Inline]) -> Markup:
         """Running text without paragraphs."""
-        return Tex(inline_latex(children, decimal=self.decimal, wide=self.wide, displays=False))
+        return self._printed(lambda: inline_latex(children, decimal=self.decimal, wide=self.wide, displays=False))
 
     def node(self, node: Node) -> Markup:
         """`$\\displaystyle …$`."""
-        return Tex(rf"$\displaystyle {self._math(node)}$")
+        return self._printed(
+            lambda: rf"$\displaystyle {to_latex(node, decimal=self.decimal, wide=self.wide)}$"
+        )
 
     def relations(self, chain: Chain) -> tuple[Markup, Markup]:
-        """`E` and `= -R … = -4.81 eV`."""
-        first, rest = _parted(chain)
-        if rest is None:
-            return Tex(""), self.node(first)
-        relation, after = rest
-        body = self._math(after)
-        sign = self._math(Chain(_NOTHING, ((relation, _NOTHING),))).strip()
-        return self.node(first), Tex(rf"$\displaystyle {sign} {body}$")
+        """`E` and `= -R … = -4.81 eV`, which TeX breaks after a relation where it must."""
+        first, rest = parted(chain)
+        return self.node(first) if first else Tex(""), self.node(rest)
 
     def chart(self, chart: Chart) -> Markup:
         """A picture."""
-        return Tex(chart_latex(drawing(chart, self.decimal), self.wide))
+        return self._printed(lambda: chart_latex(drawing(chart, self.decimal), self.wide))
 
-    def _math(self, node: Node) -> str:
-        return to_latex(node, decimal=self.decimal, wide=self.wide)
+    def _printed(self, make: Callable[[], str]) -> Tex:
+        try:
+            return Tex(make())
+        except ContentError as error:
+            if self.wide:
+                raise
+            raise NeedsWide(error.word) from error
 
 
 @dataclass(frozen=True, slots=True)
@@ -137,10 +159,12 @@ class HtmlMedium:
 
     def relations(self, chain: Chain) -> tuple[Markup, Markup]:
         """One element for what stands before the first relation, and one for each relation after it."""
-        if not chain.rest:
-            return Markup(""), self.node(chain.first)
-        steps = [self.node(Chain(_NOTHING, (pair,))) for pair in chain.rest]
-        return self.node(chain.first), Markup(" ").join(steps)
+        first, rest = parted(chain)
+        if not first or not isinstance(rest, Chain):
+            return self.node(first) if first else Markup(""), self.node(rest)
+        steps = [] if rest.first == NOTHING else [self.node(rest.first)]
+        steps += [self.node(Chain(NOTHING, (pair,))) for pair in rest.rest]
+        return self.node(first), Markup(" ").join(steps)
 
     def chart(self, chart: Chart) -> Markup:
         """An inline `<svg>`."""

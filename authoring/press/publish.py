@@ -1,0 +1,1 @@
+"""Press: everything that a set prints, written into a folder."""
