@@ -13,9 +13,9 @@ from authoring.commands.common import (
     practice_under,
     print_json,
 )
+from authoring.faults import UsageError
 from authoring.marking.written import read_line
 from authoring.papers.record import ascii_text
-from authoring.faults import UsageError
 from authoring.shielding.quantity import Target, quantity
 from authoring.shielding.solve import evaluate
 from authoring.slips.arithmetic import plain_arithmetic

@@ -178,7 +178,8 @@ def items_text() -> str:
         summary = (model.__doc__ or "").strip().splitlines()[0]
         parts += ["", wrapped(f"{told}: {summary}", 2), entries(keys(model), 4)]
     parts += ["", "A table under `given`:", entries(keys(GivenTable)), "", "`figure`:", entries(keys(FigureFields))]
-    parts += ["", wrapped("In texts and conditions a drawn species has: " + ", ".join(SpeciesView.TEMPLATE_NAMES) + ".")]
+    species_has = ", ".join(SpeciesView.TEMPLATE_NAMES)
+    parts += ["", wrapped(f"In texts and conditions a drawn species has: {species_has}.")]
     parts += [wrapped("A drawn electron has: " + ", ".join(ElectronView.TEMPLATE_NAMES) + ".")]
     parts += ["", wrapped("Shipped items: " + ", ".join(shipped_names("items")) + ".")]
     return "\n".join(parts)

@@ -9,7 +9,7 @@ from dataclasses import dataclass
 
 from authoring.faults import Fault, FaultsFound, UsageError
 from authoring.papers.chance import Chance, codes
-from authoring.papers.questions import Question, Terms, question
+from authoring.papers.questions import Kept, Question, Terms, parts_of, question, wordings
 from authoring.papers.variants import Pool, Variant, enumerated
 from authoring.specs.plan import Plan
 from authoring.specs.roster import Candidate
@@ -147,13 +147,14 @@ class _Solver:
         self.terms = terms
         self.faults: list[Fault] = []
         self._made: dict[tuple[Variant, int], Question] = {}
+        self._kept = Kept()
 
     def solved(self, variant: Variant, place: int) -> Question:
         turn = place % ROUND if turns(variant) else 0
         key = (variant, turn)
         if key not in self._made:
             try:
-                self._made[key] = question(variant, self.terms, turn)
+                self._made[key] = question(variant, self.terms, turn, self._kept)
             except FaultsFound as error:
                 self.faults += error.faults
                 self._made[key] = Question(variant, "", (), (), (), (), None, (), ())
@@ -162,10 +163,4 @@ class _Solver:
 
 def turns(variant: Variant) -> bool:
     """Whether what is printed depends on the place of the paper in the set."""
-    for entry in variant.item.parts:
-        for part in getattr(entry, "parts", (entry,)):
-            if part.task.turns or len(part.fields.ask) > 1:
-                return True
-    return False
-
-
+    return wordings(variant.item) > 1 or any(part.task.turns for part in parts_of(variant.item))

@@ -52,7 +52,10 @@ def _computed(table: GivenTable, setting: Setting) -> TableBlock:
         raise ContentError("this table has no rows; say which species under `of`")
     head = f"{what.name} / {what.unit}" if what.unit else what.name
     return TableBlock(
-        ((Plain("species"),), (Plain(head),)), tuple(rows), inlines(table.caption), (Plain(table.source or what.source),)
+        ((Plain("species"),), (Plain(head),)),
+        tuple(rows),
+        inlines(table.caption),
+        (Plain(table.source or what.source),),
     )
 
 

@@ -13,11 +13,12 @@ from pydantic import ValidationError
 from authoring.atoms.species import Species
 from authoring.faults import ContentError, Fault, FaultsFound, Source
 from authoring.papers.exhibits import figure_of, tables_of
+from authoring.papers.pools import pool
 from authoring.papers.variants import Variant
 from authoring.papers.views import value_text, view
 from authoring.shielding.practice import Practice
 from authoring.slips.catalogue import Slips
-from authoring.specs.item import Alternative, Item, Part
+from authoring.specs.item import Alternative, Item, Part, texts_in
 from authoring.specs.prose import ProseFault, read_prose
 from authoring.specs.template import Template
 from authoring.specs.template_expressions import TemplateFault
@@ -78,9 +79,28 @@ class Terms:
     figures: int | None = None
 
 
-def question(variant: Variant, terms: Terms, turn: int = 0) -> Question:
-    """Solve a variant. Raises FaultsFound with every fault of it, each at its place in the item's file."""
-    maker = _Maker(variant, terms, turn)
+class Kept:
+    """Parts solved under the same terms, by the drawn values that they rest on: variants share most of them."""
+
+    def __init__(self) -> None:
+        self.parts: dict[tuple[object, ...], PartAsked] = {}
+        self._names: dict[int, frozenset[str]] = {}
+
+    def names(self, part: Part) -> frozenset[str]:
+        """What a part may rest on: its texts as they are, their pieces between commas, and its templates' names."""
+        if id(part) not in self._names:
+            pieces = (piece.strip() for _, text in texts_in(part.raw) for piece in (text, *text.split(",")))
+            in_templates = (name for _, template in part.templates for name in template.names)
+            self._names[id(part)] = frozenset((*pieces, *in_templates))
+        return self._names[id(part)]
+
+
+def question(variant: Variant, terms: Terms, turn: int = 0, kept: Kept | None = None) -> Question:
+    """Solve a variant. Raises FaultsFound with every fault of it, each at its place in the item's file.
+
+    `kept` is filled and used by calls with the same terms and items.
+    """
+    maker = _Maker(variant, terms, turn, kept or Kept())
     made = maker.question()
     if maker.faults:
         raise FaultsFound(maker.faults)
@@ -96,7 +116,9 @@ def prose_of(text: str) -> tuple[Prose, tuple[ProseFault, ...]]:
 class _Maker:
     """Builds one question and gathers its faults."""
 
-    def __init__(self, variant: Variant, terms: Terms, turn: int) -> None:
+    def __init__(self, variant: Variant, terms: Terms, turn: int, kept: Kept) -> None:
+        self.kept = kept
+        self.names: frozenset[str] = frozenset()
         self.item: Item = variant.item
         self.variant = variant
         self.terms = terms
@@ -105,7 +127,9 @@ class _Maker:
         self.seen: Mapping[str, object] = {name: view(value, terms.practice) for name, value in variant.values}
 
     def question(self) -> Question:
-        setting = Setting(self.terms.practice, self.variant.bindings, (), self.turn, self.terms.figures, self.terms.slips)
+        bindings, terms = self.variant.bindings, self.terms
+        pools = {name: pool(draw, bindings, terms.practice) for name, draw in self.item.draws.items()}
+        setting = Setting(terms.practice, bindings, (), self.turn, terms.figures, terms.slips, pools)
         figure = self.item.figure
         return Question(
             variant=self.variant,
@@ -161,6 +185,7 @@ class _Maker:
             if asked is None:
                 break  # what follows would complain about what this part did not give
             made.append(asked)
+            self.names = self.names.union(*(self.kept.names(each) for each in _alternatives(part)))
             setting = replace(setting, earlier=(*setting.earlier, asked.solved))
         return tuple(made)
 
@@ -172,11 +197,24 @@ class _Maker:
             return None
         if len({choice.marks for choice in solved}) > 1:
             marks = ", ".join(str(choice.marks) for choice in solved)
-            self.faults.append(Fault("unequal", f"the alternatives give {marks} marks; they must be equal", either.source))
+            words = f"the alternatives give {marks} marks; they must be equal"
+            self.faults.append(Fault("unequal", words, either.source))
         return PartAsked(label, (), solved[0].solved, (), tuple(solved))
 
     def part(self, part: Part, label: str, setting: Setting) -> PartAsked | None:
-        """One part, solved."""
+        """One part, solved: it rests on what it names and on what the parts before it name."""
+        names = self.names | self.kept.names(part)
+        key = (id(part), label, self.turn, *(value for name, value in self.variant.values if name in names))
+        if key in self.kept.parts:
+            return self.kept.parts[key]
+        faults = len(self.faults)
+        made = self.newly_solved(part, label, setting)
+        if made is not None and len(self.faults) == faults:
+            self.kept.parts[key] = made
+        return made
+
+    def newly_solved(self, part: Part, label: str, setting: Setting) -> PartAsked | None:
+        """One part, worked out."""
         try:
             solved = part.task.solve(self.fields(part), setting)
         except TemplateFault as error:
@@ -227,3 +265,17 @@ def _put(data: Any, steps: tuple[str | int, ...], text: str) -> None:
 def species_of(variant: Variant) -> tuple[Species, ...]:
     """The species that a variant draws."""
     return tuple(value for _, value in variant.values if isinstance(value, Species))
+
+
+def parts_of(item: Item) -> tuple[Part, ...]:
+    """The parts of an item, alternatives among them."""
+    return tuple(each for part in item.parts for each in _alternatives(part))
+
+
+def _alternatives(part: Part | Alternative) -> tuple[Part, ...]:
+    return part.parts if isinstance(part, Alternative) else (part,)
+
+
+def wordings(item: Item) -> int:
+    """How many wordings papers take turns with: the most that any part has."""
+    return max((len(part.fields.ask) for part in parts_of(item)), default=1) or 1

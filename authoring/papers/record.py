@@ -55,7 +55,11 @@ def _paper(paper: Paper, made: _Parts) -> dict[str, Any]:
         "code": paper.code,
         "candidate": paper.candidate.id if paper.candidate else None,
         "items": [
-            {"item": question.variant.item.name, "variables": question.variant.variables, "parts": made.of(question, at)}
+            {
+                "item": question.variant.item.name,
+                "variables": question.variant.variables,
+                "parts": made.of(question, at),
+            }
             for at, question in enumerate(paper.questions, start=1)
         ],
     }

@@ -2,30 +2,32 @@
 
 from __future__ import annotations
 
-from collections import Counter
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
 from authoring.faults import Fault, FaultsFound, ShieldwrightError
-from authoring.papers.questions import Question, Terms, question, species_of
-from authoring.papers.variants import enumerated
+from authoring.papers.questions import Kept, Question, Terms, question, species_of, wordings
+from authoring.papers.variants import Variant, enumerated
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import shipped
 from authoring.specs.item import Item, read_item
 from authoring.specs.plan import read_plan
 
 
-
 @dataclass(frozen=True, slots=True)
 class Vetted:
-    """What was found: variants possible, variants sound, and findings."""
+    """What was found: variants possible, variants sound, and findings.
+
+    `counts[i]` is how many variants finding i is about; a finding beyond its end is about the file as a whole.
+    """
 
     item: str
     possible: int
     sound: int
     findings: tuple[Fault, ...]
     marks: int = 0
+    counts: tuple[int, ...] = ()
 
     @property
     def words(self) -> str:
@@ -34,7 +36,7 @@ class Vetted:
         return f"{self.item}: {state}; {self.sound} of {self.possible} variants, {self.marks} marks"
 
     def data(self) -> dict[str, Any]:
-        """`{item, possible, sound, findings}`."""
+        """`{item, possible, sound, findings: [{code, severity, message, source, variants}]}`."""
         return {
             "item": self.item,
             "possible": self.possible,
@@ -45,8 +47,9 @@ class Vetted:
                     "severity": each.severity,
                     "message": each.message,
                     "source": str(each.source) if each.source else "",
+                    "variants": count,
                 }
-                for each in self.findings
+                for each, count in zip(self.findings, (*self.counts, *[0] * len(self.findings)), strict=False)
             ],
         }
 
@@ -81,47 +84,80 @@ def vetted(item: Item, terms: Terms, fixed: Any) -> Vetted:
         pool = enumerated(item, terms.practice, fixed)
     except FaultsFound as error:
         return Vetted(item.name, 0, 0, error.faults)
-    faults: dict[tuple[str, object], list[Fault]] = {}
-    sound: list[Question] = []
+    seen = _Seen(item)
+    kept = Kept()
     for variant in pool.variants:
+        seen.add(variant, _solved(variant, terms, kept))
+    return seen.vetted(len(pool.variants))
+
+
+def _solved(variant: Variant, terms: Terms, kept: Kept) -> Question | tuple[Fault, ...]:
+    """A variant's question, or its faults: in every wording that papers take turns with."""
+    faults: list[Fault] = []
+    made: Question | None = None
+    for turn in range(wordings(variant.item)):
         try:
-            sound.append(question(variant, terms))
+            made = question(variant, terms, turn, kept)
         except FaultsFound as error:
-            for fault in error.faults:
-                faults.setdefault((fault.code, fault.source), []).append(fault)
-    findings = [_with_count(alike) for alike in faults.values()]
-    findings += _weaknesses(item, sound)
-    marks = sound[0].marks if sound else 0
-    return Vetted(item.name, len(pool.variants), len(sound), tuple(findings), marks)
+            faults += error.faults
+    return tuple(dict.fromkeys(faults)) if faults or made is None else made
 
 
-def _with_count(alike: list[Fault]) -> Fault:
-    first = alike[0]
-    if len(alike) == 1:
+class _Seen:
+    """What the variants of an item have shown so far; the questions themselves are let go."""
+
+    def __init__(self, item: Item) -> None:
+        self.item = item
+        self.sound = 0
+        self.faults: dict[tuple[str, object], tuple[Fault, int]] = {}
+        self.marks: set[int] = set()
+        self.lengths: set[int] = set()
+        self.differing: set[str] = set()
+
+    def add(self, variant: Variant, made: Question | tuple[Fault, ...]) -> None:
+        """Take note of one variant."""
+        if isinstance(made, tuple):
+            for fault in {(each.code, each.source): each for each in reversed(made)}.values():
+                first, count = self.faults.get((fault.code, fault.source), (fault, 0))
+                self.faults[fault.code, fault.source] = (first, count + 1)
+            return
+        self.sound += 1
+        self.marks.add(made.marks)
+        self.lengths.add(sum(len(part.solved.steps) for part in made.parts))
+        self.differing.update(species.label for species in species_of(variant) if species.differs)
+
+    def vetted(self, possible: int) -> Vetted:
+        """What was found in all of them."""
+        found = [(_with_count(fault, count), count) for fault, count in self.faults.values()]
+        found += [(weakness, self.sound) for weakness in self.weaknesses()]
+        findings, counts = tuple(each for each, _ in found), tuple(count for _, count in found)
+        return Vetted(self.item.name, possible, self.sound, findings, min(self.marks, default=0), counts)
+
+    def weaknesses(self) -> list[Fault]:
+        """What is weak about the sound variants as a whole."""
+        found: list[Fault] = []
+        if self.sound == 1 and self.item.draws:
+            words = "only one variant is possible: every candidate gets the same"
+            found.append(self.weak("one-variant", words, "draw"))
+        if len(self.marks) > 1:
+            marks = " or ".join(str(number) for number in sorted(self.marks))
+            found.append(self.weak("unequal-marks", f"variants give {marks} marks; say `marks` in every part", "parts"))
+        if self.lengths and max(self.lengths) > min(self.lengths) + 3:
+            words = f"the working takes from {min(self.lengths)} to {max(self.lengths)} lines"
+            found.append(self.weak("unequal-working", f"{words}: variants may not be equally hard", "draw"))
+        if self.differing:
+            labels = ", ".join(sorted(self.differing))
+            words = f"measurement and the taught rule give different configurations for {labels}"
+            found.append(self.weak("rule-differs", words, "draw"))
+        return found
+
+    def weak(self, code: str, message: str, step: str) -> Fault:
+        """A weakness at a key of the item."""
+        return Fault(code, message, self.item.at(step), "weakness")
+
+
+def _with_count(first: Fault, count: int) -> Fault:
+    if count == 1:
         return first
-    return Fault(first.code, f"{first.message}; and {len(alike) - 1} more variants", first.source, first.severity)
-
-
-def _weaknesses(item: Item, sound: list[Question]) -> list[Fault]:
-    found: list[Fault] = []
-    if len(sound) == 1 and item.draws:
-        found.append(_weak("one-variant", "only one variant is possible: every candidate gets the same", item, "draw"))
-    marks = Counter(each.marks for each in sound)
-    if len(marks) > 1:
-        words = " or ".join(str(number) for number in sorted(marks))
-        found.append(_weak("unequal-marks", f"variants give {words} marks; say `marks` in every part", item, "parts"))
-    lengths = [sum(len(part.solved.steps) for part in each.parts) for each in sound]
-    if lengths and max(lengths) > min(lengths) + 3:
-        words = f"the working takes from {min(lengths)} to {max(lengths)} lines: variants may not be equally hard"
-        found.append(_weak("unequal-working", words, item, "draw"))
-    odd = sorted({species.label for each in sound for species in species_of(each.variant) if species.differs})
-    if odd:
-        words = f"measurement and the taught rule give different configurations for {', '.join(odd)}"
-        found.append(_weak("rule-differs", words, item, "draw"))
-    return found
-
-
-def _weak(code: str, message: str, item: Item, *steps: str) -> Fault:
-    return Fault(code, message, item.at(*steps), "weakness")
-
-
+    plural = "s" if count > 2 else ""
+    return Fault(first.code, f"{first.message}; and {count - 1} more variant{plural}", first.source, first.severity)

@@ -20,7 +20,6 @@ from authoring.specs.yaml_tree import Tree, read_tree
 from authoring.tasks.fields import Between, Strict, Text, Word, YesNo
 
 
-
 class LayoutFields(Strict):
     """How the sheets are laid out."""
 
@@ -67,7 +66,7 @@ class PlanFields(Strict):
 
 @dataclass(frozen=True, slots=True)
 class Plan:
-    """A plan, read: `fixed[i]` holds what is held fixed of item i; `practice` is the published one under the conventions."""
+    """A plan, read. `fixed[i]` is what is held fixed of item i; `practice` the published one under the conventions."""
 
     name: str
     title: str
@@ -101,7 +100,10 @@ def read_plan(path: Path) -> Plan:
     def slips_beside(word: str) -> Tree:
         return read_tree(path.parent / word)
 
-    return plan_from(read_tree(path), path.stem, lambda word: read_item(located(word, "items", path.parent)), slips_beside)
+    def item_beside(word: str) -> Item:
+        return read_item(located(word, "items", path.parent))
+
+    return plan_from(read_tree(path), path.stem, item_beside, slips_beside)
 
 
 def plan_from(

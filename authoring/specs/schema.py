@@ -1,4 +1,4 @@
-"""Stage 1, read: JSON Schemas (draft 2020-12) of items, plans and files of slips, made from the models that read them."""
+"""Stage 1, read: JSON Schemas (draft 2020-12) of items and plans, made from the models that read them."""
 
 from __future__ import annotations
 
