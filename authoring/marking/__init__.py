@@ -1,1 +1,1 @@
-"""Stage 7, mark: scripts in, judgements out, the ledger that keeps them."""
+"""Stage 8, mark: scripts in, judgements out, the ledger that keeps them."""

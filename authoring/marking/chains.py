@@ -1,4 +1,4 @@
-"""Stage 7, mark: equation chains: split at their relations, each member read, valued and labelled."""
+"""Stage 8, mark: equation chains: split at their relations, each member read, valued and labelled."""
 
 from __future__ import annotations
 

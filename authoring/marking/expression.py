@@ -1,4 +1,4 @@
-"""Stage 7, mark: the value of an expression as written, and its terms where it is a sum of products.
+"""Stage 8, mark: the value of an expression as written, and its terms where it is a sum of products.
 
 The nodes are those that the key is printed from (authoring/working/nodes.py). Values are Decimals of 34
 digits; whatever could grow without bound is refused with a remark, and has no value.

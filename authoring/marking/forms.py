@@ -1,4 +1,4 @@
-"""Stage 7, mark: what a line of a script says, as a structure."""
+"""Stage 8, mark: what a line of a script says, as a structure."""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""Stage 7, mark: one member of an equation chain becomes nodes, by the grammar beside this file."""
+"""Stage 8, mark: one member of an equation chain becomes nodes, by the grammar beside this file."""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""Stage 7, mark: the plain forms that most lines have (`3.30`, `S = 0.35 + 11*0.85 + 10 = 19.70`), read by hand.
+"""Stage 8, mark: the plain forms that most lines have (`3.30`, `S = 0.35 + 11*0.85 + 10 = 19.70`), read by hand.
 
 The structure is the one that the grammar gives; a test compares the two. Anything else is left to the grammar.
 """

@@ -1,4 +1,4 @@
-"""Stage 7, mark: final answers in a table (CSV): a row a paper, a column a part."""
+"""Stage 8, mark: final answers in a table (CSV): a row a paper, a column a part."""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""Stage 7, mark: files of transcribed scripts (YAML, or CSV of final answers), every line with its place.
+"""Stage 8, mark: files of transcribed scripts (YAML, or CSV of final answers), every line with its place.
 
 What can be read is read: a broken entry is a fault at its place, and the entries around it stand.
 """

@@ -1,4 +1,4 @@
-"""Stage 7, mark: lines that are no equations: configurations, groups, tallies, orderings, choices, names."""
+"""Stage 8, mark: lines that are no equations: configurations, groups, tallies, orderings, choices, names."""
 
 from __future__ import annotations
 

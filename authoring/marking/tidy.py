@@ -1,4 +1,4 @@
-"""Stage 7, mark: a transcribed line with its many typographies folded into one, before it is read."""
+"""Stage 8, mark: a transcribed line with its many typographies folded into one, before it is read."""
 
 from __future__ import annotations
 

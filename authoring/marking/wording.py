@@ -1,4 +1,4 @@
-"""Stage 7, mark: words around an answer: set aside where they add nothing, kept as words where they might."""
+"""Stage 8, mark: words around an answer: set aside where they add nothing, kept as words where they might."""
 
 from __future__ import annotations
 

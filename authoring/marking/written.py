@@ -1,4 +1,4 @@
-"""Stage 7, mark: a line as a candidate wrote it becomes a structure. Nothing is ever run as code.
+"""Stage 8, mark: a line as a candidate wrote it becomes a structure. Nothing is ever run as code.
 
 `read_line` takes any text and never raises; what cannot be read is kept as words, or as unreadable with a remark.
 """
