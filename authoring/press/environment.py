@@ -136,4 +136,5 @@ def _found(message: str, path: Path, line: int) -> FaultsFound:
     if path.is_file():
         lines = path.read_text(encoding="utf-8").splitlines()
         text = lines[line - 1] if 0 < line <= len(lines) else ""
-    return FaultsFound([Fault("template", f"this template cannot be used: {message}", Source(str(path), line, 1, text))])
+    place = Source(str(path), line, 1, text)
+    return FaultsFound([Fault("template", f"this template cannot be used: {message}", place)])

@@ -14,6 +14,7 @@ from authoring.press.language import Words
 from authoring.press.medium import Medium, parted
 from authoring.press.sheets import ExhibitView, blank_label
 from authoring.tasks.solved import Answer, BlankTable, Options, Solved
+from authoring.working.lines import Point
 from authoring.working.nodes import Math, Plain
 from authoring.working.numbers import shown
 from authoring.working.text import to_text
@@ -119,17 +120,23 @@ class KeyMaker:
             label=medium.text(part.label),
             asks=medium.text(_asks(solved)),
             marks=medium.text(f"[{part.marks}]"),
-            answer=medium.number(answer.shown) if answer.kind == "text" else medium.node(answer.node),
+            answer=self.answer(answer),
             accepted=self.accepted(solved),
             first_width=medium.text(f"{max(fitting, default=0) * _LETTER + 0.3:.1f}"),
             lines=tuple(self.lines(solved)),
             exhibits=tuple(_filled(each, medium) for each in solved.exhibits if isinstance(each, BlankTable)),
             options=tuple(self.options(solved)),
             wrong=tuple(self.wrong(solved)),
-            rubric=tuple((medium.text(code), medium.text(text)) for code, text in solved.rubric),
+            rubric=tuple((medium.text(code), medium.words(text)) for code, text in solved.rubric),
             notes=tuple(medium.prose(note) for note in part.notes),
             choices=(),
         )
+
+    def answer(self, answer: Answer) -> Markup:
+        """The answer as a marker looks for it."""
+        if answer.kind in ("text", "electron", "letter"):
+            return self.medium.number(answer.shown)
+        return self.medium.node(answer.node)
 
     def lines(self, solved: Solved) -> Iterator[LineView]:
         """The working with its points; where a rubric says what earns them, the points stand there."""
@@ -137,13 +144,13 @@ class KeyMaker:
         for at, step in enumerate(solved.steps):
             first, rest = medium.relations(step.line.chain)
             left = parted(step.line.chain)[0]
-            points = tuple(
-                PointView(medium.text(point.code), point.follow_through, medium.text(point.what))
-                for point in solved.points
-                if point.line == at
-            )
+            points = tuple(self.point(point) for point in solved.points if point.line == at)
             apart = left is not None and len(to_text(left)) > _MOST_FIRST
             yield LineView(first, rest, apart, points, medium.number(step.line.note))
+
+    def point(self, point: Point) -> PointView:
+        """A mark point."""
+        return PointView(self.medium.text(point.code), point.follow_through, self.medium.words(point.what))
 
     def options(self, solved: Solved) -> Iterator[tuple[Markup, Markup, Markup]]:
         """Each option, and which is right or which slip is behind it."""
@@ -151,7 +158,7 @@ class KeyMaker:
             if isinstance(exhibit, Options):
                 for option in exhibit.options:
                     right = option.letter == solved.answer.shown
-                    says = self.words("option_right") if right else self.medium.text(" + ".join(option.slips))
+                    says = self.words("option_right") if right else self.medium.words(" + ".join(option.slips))
                     yield self.medium.text(f"({option.letter})"), self.medium.node(option.node), says
 
     def wrong(self, solved: Solved) -> Iterator[tuple[Markup, Markup]]:
@@ -159,7 +166,7 @@ class KeyMaker:
         if any(isinstance(exhibit, Options) for exhibit in solved.exhibits):
             return
         for each in solved.wrong[:_MOST_WRONG]:
-            yield self.medium.number(each.shown), self.medium.text(" + ".join(each.slips))
+            yield self.medium.number(each.shown), self.medium.words(" + ".join(each.slips))
 
     def accepted(self, solved: Solved) -> Markup:
         """Which values will do for a rounded number: what the task says, else one more or less in the last place."""
@@ -206,7 +213,7 @@ class KeyMaker:
         answer = part.solved.answer
         if _long(answer):
             return self.words("see_paper")
-        if answer.kind in ("number", "letter"):
+        if answer.kind in ("number", "letter", "electron"):
             return self.medium.number(answer.shown)
         return self.medium.node(answer.node)
 
@@ -262,7 +269,9 @@ def _filled(table: BlankTable, medium: Medium) -> ExhibitView:
     number = {place: blank_label(index) for index, place in enumerate(blanks, start=1)}
     rows = tuple(
         tuple(
-            medium.inline((Plain(f"({number[at, column]}) "), Math(cell))) if (at, column) in number else medium.node(cell)
+            medium.inline((Plain(f"({number[at, column]}) "), Math(cell)))
+            if (at, column) in number
+            else medium.node(cell)
             for column, cell in enumerate(row)
         )
         for at, row in enumerate(table.filled)

@@ -62,8 +62,8 @@ def _opening(paper_set: PaperSet, words: Words) -> Iterator[str]:
         macros=Tex(macros),
         words=words,
         two_sided=paper_set.plan.layout.two_sided,
-        number_page=Tex(r"\number\pagenow"),
-        number_pages=Tex(r"\number\pagetotal"),
+        number_page=Tex(r"{\number\pagenow}"),
+        number_pages=Tex(r"{\number\pagetotal}"),
     )
 
 

@@ -17,7 +17,7 @@ from authoring.press.environment import Tex
 from authoring.tasks.solved import Chart
 from authoring.working.latex import to_latex
 from authoring.working.mathml import NAMESPACE, escape_xml, math_element
-from authoring.working.nodes import Chain, Inline, Node, Prose, Words
+from authoring.working.nodes import Chain, Inline, Math, Node, Plain, Prose, Sym, Words
 from authoring.working.prose_html import inline_html, prose_html
 from authoring.working.prose_latex import inline_latex, prose_latex
 from authoring.working.tex_escape import escape_tex, needs_wide
@@ -46,6 +46,9 @@ class Medium(Protocol):
     def number(self, text: str) -> Markup:
         """A number, or a text with numbers, with the decimal mark of the plan."""
 
+    def words(self, text: str) -> Markup:
+        """Words of our own with symbols in them, such as `Z_eff` and `n*`, numbers as in `number`."""
+
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""
 
@@ -62,6 +65,7 @@ class Medium(Protocol):
         """A chart."""
 
 
+_SYMBOL = re.compile(r"\b([A-Za-z])_([a-z]+)\b|\bn\*")
 _DIGIT_POINT = re.compile(r"(?<=\d)\.(?=\d)")
 NOTHING = Words("")
 
@@ -74,6 +78,17 @@ def parted(chain: Chain) -> tuple[Node | None, Node]:
     if relation == ":":
         return Chain(chain.first, ((":", NOTHING),)), Chain(after, chain.rest[1:])
     return chain.first, Chain(NOTHING, chain.rest)
+
+
+def symbols(text: str, decimal: str) -> tuple[Inline, ...]:
+    """Words with `Z_eff` and `n*` set as formulas."""
+    found: list[Inline] = []
+    end = 0
+    for match in _SYMBOL.finditer(text):
+        found.append(Plain(with_decimal(text[end : match.start()], decimal)))
+        found.append(Math(Sym(match[1], match[2]) if match[1] else Sym("n", sup="*")))
+        end = match.end()
+    return (*found, Plain(with_decimal(text[end:], decimal)))
 
 
 def with_decimal(text: str, decimal: str) -> str:
@@ -97,6 +112,10 @@ class TexMedium:
     def number(self, text: str) -> Markup:
         """A text with numbers, with the decimal mark of the plan."""
         return self.text(with_decimal(text, self.decimal))
+
+    def words(self, text: str) -> Markup:
+        """Words of our own with symbols in them."""
+        return self.inline(symbols(text, self.decimal))
 
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""
@@ -143,6 +162,10 @@ class HtmlMedium:
     def number(self, text: str) -> Markup:
         """A text with numbers, with the decimal mark of the plan."""
         return self.text(with_decimal(text, self.decimal))
+
+    def words(self, text: str) -> Markup:
+        """Words of our own with symbols in them."""
+        return self.inline(symbols(text, self.decimal))
 
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""

@@ -23,6 +23,8 @@ _MOST_LINES = 30
 # Characters of an option that leave room for four, or two, side by side.
 _FOUR_ABREAST, _TWO_ABREAST = 13, 30
 
+_NOTHING = Markup()
+
 
 @dataclass(frozen=True, slots=True)
 class ExhibitView:
@@ -36,7 +38,7 @@ class ExhibitView:
     header: tuple[Markup, ...] = ()
     abreast: int = 1
     blanks: frozenset[tuple[int, int]] = frozenset()
-    picture: Markup = Markup()
+    picture: Markup = _NOTHING
 
 
 @dataclass(frozen=True, slots=True)
