@@ -50,7 +50,7 @@ def command(
         raise UsageError(f"{value[:40]!r} is not a number")
     practice = practice_under(conventions)
     names = [name] if name else ["screening constant", "effective nuclear charge"]
-    found = []
+    found: list[tuple[str, str, str, tuple[str, ...], str]] = []
     for each in names:
         what = quantity(each)
         target = Target(

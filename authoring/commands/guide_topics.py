@@ -174,9 +174,9 @@ def items_text() -> str:
     for key, model in TELLING.items():
         kinds.setdefault(model, f"with `{key}`")
     parts = [FIRST_ITEM, "Keys of an item:", entries(keys(ItemFields)), "", "`draw` binds names to what is drawn:"]
-    for model, told in kinds.items():
-        summary = (model.__doc__ or "").strip().splitlines()[0]
-        parts += ["", wrapped(f"{told}: {summary}", 2), entries(keys(model), 4)]
+    for kind, told in kinds.items():
+        summary = (kind.__doc__ or "").strip().splitlines()[0]
+        parts += ["", wrapped(f"{told}: {summary}", 2), entries(keys(kind), 4)]
     parts += ["", "A table under `given`:", entries(keys(GivenTable)), "", "`figure`:", entries(keys(FigureFields))]
     species_has = ", ".join(SpeciesView.TEMPLATE_NAMES)
     parts += ["", wrapped(f"In texts and conditions a drawn species has: {species_has}.")]
