@@ -34,9 +34,11 @@ def groups_of(target: Target, practice: Practice) -> tuple[Group, ...]:
 
 
 def _needs(target: Target, practice: Practice) -> tuple[Target, ...]:
-    # All electrons of a group feel one charge; its last subshell stands for it.
+    # All electrons of a group feel one charge; its last subshell that has electrons stands for it.
+    held = configuration_of(target.species, practice).count
     charges = tuple(
-        Target("effective nuclear charge", target.species, group.subshells[-1]) for group in groups_of(target, practice)
+        Target("effective nuclear charge", target.species, [each for each in group.subshells if held(each)][-1])
+        for group in groups_of(target, practice)
     )
     return (Target("groups", target.species), *charges)
 
