@@ -7,13 +7,13 @@ and marker, and the history stays. Only candidate ids stand in it, never names.
 from __future__ import annotations
 
 import datetime
+import functools
 import itertools
 import sqlite3
-import uuid
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from pathlib import Path
 from types import TracebackType
-from typing import Any
+from typing import Any, TypeAlias
 
 from authoring.faults import ContentError, UsageError
 from authoring.marking.ledger_events import (
@@ -27,6 +27,7 @@ from authoring.marking.ledger_events import (
     EventKind,
     checked_row,
     encode,
+    new_id,
 )
 from authoring.marking.ledger_file import (
     NAME,
@@ -40,6 +41,7 @@ from authoring.marking.ledger_file import (
 )
 from authoring.marking.ledger_mark import Mark
 
+_Entry: TypeAlias = "tuple[EventKind, str, str, Mapping[str, Any]]"
 _KEPT_ONCE = ("script", "judgement")
 _FEW = 20
 
@@ -190,30 +192,36 @@ class Ledger:
 
     # --- inside ---------------------------------------------------------------------------------------
 
-    def _add(self, entries: Iterable[tuple[EventKind, str, str, Mapping[str, Any]]], marker: str) -> list[str]:
+    def _add(self, entries: Iterable[_Entry], marker: str) -> list[str]:
         """Add entries (kind, paper, part, content) in one transaction; their ids, once they are on the disk."""
         _check_name("marker", marker)
-        at = datetime.datetime.now(datetime.UTC).isoformat(timespec="microseconds")
+        entries = list(entries)
         with explained(self.path), writing(self._connection):
-            (turn,) = self._connection.execute("SELECT coalesce(max(turn), 0) FROM events").fetchone()
-            entries = list(entries)
+            # Ids begin with their turn.
+            last = self._connection.execute("SELECT turn FROM events ORDER BY id DESC LIMIT 1").fetchone()
+            turn = int(last[0]) if last else 0
             latest = _Latest(self._connection, marker, {paper for _, paper, _, _ in entries})
             ids: list[str] = []
-            rows: list[tuple[Any, ...]] = []
-            for kind, paper, part, content in entries:
-                _check_name("paper", paper)
-                if kind != "script":
-                    _check_name("part", part)
-                payload = _payload(paper, content)
-                known = latest.same(kind, paper, part, payload)
-                if known is None:
-                    turn += 1
-                    known = uuid.uuid4().hex
-                    rows.append((known, turn, kind, paper, part, marker, at, self.origin, payload))
-                    latest.note(kind, paper, part, payload, known)
-                ids.append(known)
-            self._insert(rows)
+            self._insert(self._rows(entries, latest, marker, turn, ids))
         return ids
+
+    def _rows(
+        self, entries: Iterable[_Entry], latest: _Latest, marker: str, turn: int, ids: list[str]
+    ) -> Iterator[tuple[Any, ...]]:
+        """The rows of what is new among the entries; `ids` gathers the id of every entry."""
+        at = datetime.datetime.now(datetime.UTC).isoformat(timespec="microseconds")
+        for kind, paper, part, content in entries:
+            _check_name("paper", paper)
+            if kind != "script":
+                _check_name("part", part)
+            payload = _payload(paper, content)
+            known = latest.same(kind, paper, part, payload)
+            if known is None:
+                turn += 1
+                known = new_id(turn)
+                latest.note(kind, paper, part, payload, known)
+                yield known, turn, kind, paper, part, marker, at, self.origin, payload
+            ids.append(known)
 
     def _insert(self, rows: Iterable[tuple[Any, ...]]) -> None:
         self._connection.executemany(f"INSERT INTO events ({COLUMNS}) VALUES (?,?,?,?,?,?,?,?,?)", rows)
@@ -282,12 +290,18 @@ def _payload(paper: str, content: Mapping[str, Any]) -> str:
     text = encode(content)
     if len(text) > LONGEST_PAYLOAD:
         raise ContentError(f"what is written about paper {paper[:40]} is too long to be kept")
-    return text.encode("utf-8", "replace").decode("utf-8")
+    # Half a character (a lone surrogate) cannot be kept as UTF-8.
+    return text if text.isascii() else text.encode("utf-8", "replace").decode("utf-8")
 
 
 def _check_name(what: str, text: str) -> None:
-    if not text.strip() or len(text) > LONGEST_NAME or not text.isprintable():
+    if not _is_name(text):
         raise ContentError(f"a {what} is named by 1 to {LONGEST_NAME} printable characters, not {text[:40]!r}")
+
+
+@functools.lru_cache(maxsize=1024)
+def _is_name(text: str) -> bool:
+    return bool(text.strip()) and len(text) <= LONGEST_NAME and text.isprintable()
 
 
 def _differ(marks: Sequence[Event]) -> bool:

@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import json
+import re
+import secrets
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any, Literal
@@ -18,7 +20,9 @@ ORDER = "turn, at, id"
 LONGEST_NAME = 200
 LONGEST_PAYLOAD = 1_000_000
 
-encode = json.JSONEncoder(ensure_ascii=False, sort_keys=True, separators=(",", ":")).encode
+encode = json.JSONEncoder(ensure_ascii=False, separators=(",", ":")).encode
+
+_ID = re.compile(r"[0-9a-f]{32}")
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,10 +70,16 @@ class Difference:
     marks: tuple[Event, ...]
 
 
+def new_id(turn: int) -> str:
+    """96 random bits behind the turn: ids in the order of their making keep the index of a large pile quick."""
+    return f"{turn:08x}{secrets.token_hex(12)}"
+
+
 def checked_row(row: tuple[Any, ...], path: Path) -> tuple[Any, ...]:
     """A row of another file, which may hold anything."""
     texts = (row[0], *row[2:])
-    fits = all(isinstance(text, str) for text in texts) and isinstance(row[1], int) and 0 < row[1] < 2**53
+    fits = all(isinstance(text, str) for text in texts) and isinstance(row[1], int) and 0 < row[1] < 2**32
+    fits = fits and bool(_ID.fullmatch(row[0])) and int(row[0][:8], 16) == row[1]
     if fits and row[2] in ("script", *MARKS) and len(row[8]) <= LONGEST_PAYLOAD:
         try:
             content = json.loads(row[8])

@@ -38,7 +38,6 @@ CREATE TABLE events (
     payload TEXT NOT NULL
 );
 CREATE INDEX events_by_part ON events (paper, part);
-CREATE INDEX events_by_turn ON events (turn);
 """
 _REFUSAL = """
 CREATE TRIGGER {table}_no_{verb} BEFORE {verb} ON {table}
@@ -47,7 +46,7 @@ BEGIN SELECT RAISE(ABORT, 'the ledger only grows: nothing in it is changed or re
 # REPLACE removes a row without asking the triggers above.
 _NO_REPLACING = """
 CREATE TRIGGER {table}_no_replacing BEFORE INSERT ON {table}
-WHEN EXISTS (SELECT 1 FROM {table} WHERE {key} = NEW.{key})
+WHEN EXISTS (SELECT 1 FROM {table} WHERE {keys})
 BEGIN SELECT RAISE(ABORT, 'the ledger only grows: nothing in it is changed or removed'); END;
 """
 
@@ -122,8 +121,8 @@ def make_tables(connection: sqlite3.Connection, set_id: str) -> None:
         for table in ("facts", "events", "origins"):
             for verb in ("UPDATE", "DELETE"):
                 connection.execute(_REFUSAL.format(table=table, verb=verb))
-        for table, key in (("facts", "name"), ("events", "id"), ("events", "seq")):
-            connection.execute(_NO_REPLACING.format(table=table, key=key).replace("no_repl", f"{key}_no_repl"))
+        connection.execute(_NO_REPLACING.format(table="facts", keys="name = NEW.name"))
+        connection.execute(_NO_REPLACING.format(table="events", keys="id = NEW.id OR seq = NEW.seq"))
 
 
 def has_tables(connection: sqlite3.Connection) -> bool:

@@ -26,15 +26,16 @@ class Mark:
     def payload(self) -> dict[str, Any]:
         """What is kept of it, besides the paper and the part."""
         judged = self.judgement
+        # Tuples, not lists: the garbage collector need not watch those of a large pile.
         return {
             "awarded": judged.awarded,
             "candidate": self.candidate,
             "certainty": judged.certainty,
             "out_of": judged.out_of,
-            "points": [[point.code, point.awarded, point.reason, point.open] for point in judged.points],
-            "remarks": list(judged.remarks),
-            "rivals": list(judged.rivals),
-            "slips": list(judged.slips),
+            "points": tuple([(point.code, point.awarded, point.reason, point.open) for point in judged.points]),
+            "remarks": judged.remarks,
+            "rivals": judged.rivals,
+            "slips": judged.slips,
         }
 
 

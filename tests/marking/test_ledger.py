@@ -206,7 +206,7 @@ def test_a_copy_with_unreadable_rows_is_refused(tmp_path: Path, payload: str) ->
         folder.mkdir()
         Ledger.open(folder, "set-1").close()
     connection = sqlite3.connect(two / NAME)
-    row = ("id", 1, "judgement", "A", "1a", "AB", "2026-01-01", "o", payload)
+    row = ("00000001" + "a" * 24, 1, "judgement", "A", "1a", "AB", "2026-01-01", "o", payload)
     connection.execute(
         "INSERT INTO events (id, turn, kind, paper, part, marker, at, origin, payload) VALUES (?,?,?,?,?,?,?,?,?)", row
     )
