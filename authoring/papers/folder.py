@@ -16,6 +16,17 @@ LEDGER = "ledger.sqlite"
 
 def checked_target(target: Path, replace: bool) -> None:
     """Raise UsageError where a set cannot be written: before any work is done."""
+    try:
+        _check(target, replace)
+    except (OSError, ValueError) as error:
+        raise _not_written(target, error) from error
+
+
+def _not_written(target: Path, error: Exception) -> UsageError:
+    return UsageError(f"{str(target)[:200]!r} cannot be written: {getattr(error, 'strerror', None) or error}")
+
+
+def _check(target: Path, replace: bool) -> None:
     if target.is_symlink() or (target.exists() and not target.is_dir()):
         raise UsageError(f"{target} is not a folder; name another with --into")
     if target.is_dir() and any(target.iterdir()):
@@ -36,13 +47,13 @@ def whole_folder(target: Path, replace: bool) -> Iterator[Path]:
         target.parent.mkdir(parents=True, exist_ok=True)
         scratch = Path(tempfile.mkdtemp(prefix=f".{target.name[:40]}-", dir=target.parent))
     except (OSError, ValueError) as error:
-        raise UsageError(f"{target} cannot be written: {getattr(error, 'strerror', None) or error}") from error
+        raise _not_written(target, error) from error
     try:
         scratch.chmod(0o755)
         yield scratch
         _put(scratch, target)
     except OSError as error:
-        raise UsageError(f"{target} cannot be written: {error.strerror or error}") from error
+        raise _not_written(target, error) from error
     finally:
         shutil.rmtree(scratch, ignore_errors=True)
 

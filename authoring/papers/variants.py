@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 
@@ -13,6 +14,8 @@ from authoring.specs.item import Item
 
 # Beyond this an item is better written with smaller pools: a class needs hundreds, and every one is checked.
 MOST_VARIANTS = 200_000
+MOST_TRIED = 4 * MOST_VARIANTS
+_TOO_LARGE = f"more than {MOST_VARIANTS:,} combinations can be drawn; make the pools smaller"
 
 
 @dataclass(frozen=True, slots=True)
@@ -57,12 +60,11 @@ def enumerated(item: Item, practice: Practice, fixed: Mapping[str, str] | None =
     for bindings in _combinations(item, practice, fixed or {}):
         possible += 1
         if possible > MOST_VARIANTS:
-            message = f"more than {MOST_VARIANTS:,} combinations can be drawn; make the pools smaller"
-            raise FaultsFound([Fault("pool-too-large", message, item.at("draw"))])
+            raise FaultsFound([Fault("pool-too-large", _TOO_LARGE, item.at("draw"))])
         if _kept(item, bindings, practice):
             found.append(Variant(item, tuple(bindings.items())))
     if not possible:
-        raise FaultsFound([Fault("empty-pool", _empty_words(item, practice, fixed or {}), item.at("draw"))])
+        raise FaultsFound([_empty_pool(item, practice, fixed or {})])
     if not found:
         message = f"none of the {possible:,} combinations meets all conditions under `keep`"
         raise FaultsFound([Fault("nothing-kept", message, item.at("keep"))])
@@ -74,8 +76,12 @@ def _combinations(
 ) -> Iterator[dict[str, object]]:
     """The combinations of the first `upto` draws (all of them by default), without regard to the conditions."""
     names = list(item.draws)[:upto]
+    tried = itertools.count(1)
 
     def bind(at: int, bindings: dict[str, object]) -> Iterator[dict[str, object]]:
+        # Values that lead nowhere count as well: two long rows before an empty pool would take hours.
+        if next(tried) > MOST_TRIED:
+            raise FaultsFound([Fault("pool-too-large", _TOO_LARGE, item.at("draw"))])
         if at == len(names):
             yield dict(bindings)
             return
@@ -115,10 +121,11 @@ def _kept(item: Item, bindings: Mapping[str, object], practice: Practice) -> boo
     return True
 
 
-def _empty_words(item: Item, practice: Practice, fixed: Mapping[str, str]) -> str:
+def _empty_pool(item: Item, practice: Practice, fixed: Mapping[str, str]) -> Fault:
     """Which draw is empty: the first that has nothing to offer in any combination before it."""
     held = "".join(f"; {name} is held at {value!r}" for name, value in fixed.items())
     for upto, name in enumerate(item.draws, start=1):
         if next(_combinations(item, practice, fixed, upto), None) is None:
-            return f"{name!r} is drawn from an empty pool{held}"
-    return f"nothing can be drawn{held}"
+            place = item.tree.key_at(("draw", name))
+            return Fault("empty-pool", f"{name!r} is drawn from an empty pool{held}", place)
+    return Fault("empty-pool", f"nothing can be drawn{held}", item.at("draw"))

@@ -24,6 +24,14 @@ def shipped_names(kind: str) -> tuple[str, ...]:
     return tuple(sorted(path.stem for path in (shipped_folder("scenarios") / kind).glob("*.yaml")))
 
 
+def _is_file(path: Path) -> bool:
+    """Whether a file is there; a name that no file can have, or a folder that is closed to us, has none."""
+    try:
+        return path.is_file()
+    except (OSError, ValueError):
+        return False
+
+
 def located(word: str, kind: str, beside: Path | None = None) -> Path:
     """The file that a word means: a path (relative to `beside`, or to here), or a shipped name.
 
@@ -31,7 +39,7 @@ def located(word: str, kind: str, beside: Path | None = None) -> Path:
     """
     base = beside if beside is not None else Path()
     for path in (base / word, base / f"{word}.yaml", base / kind / f"{word}.yaml"):
-        if "\0" not in word and path.is_file():
+        if _is_file(path):
             return path
     names = shipped_names(kind)
     if word in names:

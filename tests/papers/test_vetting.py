@@ -1,0 +1,87 @@
+"""What vetting finds in items and plans, with how many variants each finding is about."""
+
+from __future__ import annotations
+
+import pytest
+from papers_help import TANK, TERMS, read, write_item
+
+from authoring.papers.vet import Vetted, vetted, vetted_item, vetted_plan
+
+
+def vet(text: str) -> Vetted:
+    """An item, vetted under the published practice."""
+    return vetted(read(text), TERMS, {})
+
+
+def findings(result: Vetted) -> list[tuple[str, str, int]]:
+    """Code, severity and number of variants of each finding."""
+    return [(each["code"], each["severity"], each["variants"]) for each in result.data()["findings"]]
+
+
+def test_a_sound_item_has_no_findings():
+    result = vet(TANK)
+    assert (result.possible, result.sound, result.findings) == (7, 7, ())
+    assert result.words == f"tank: sound; 7 of 7 variants, {result.marks} marks"
+    assert result.marks == vet(TANK).marks > 0
+
+
+def test_faults_in_some_variants_are_counted_and_told_once():
+    """Among Sc to Ni without Cr, only manganese, iron, cobalt and nickel have more than four 3d electrons."""
+    text = TANK.replace(
+        "  - calculate: effective",
+        "  - calculate: screening constant\n    of: metal\n"
+        "    electron: '{% if metal.z > 24 %}5s{% else %}3d{% endif %}'\n"
+        "  - calculate: effective",
+    )
+    result = vet(text)
+    assert (result.possible, result.sound) == (7, 3)
+    assert findings(result) == [("unsolvable", "fault", 4)]
+    assert "has no 5s electron" in result.findings[0].message
+    assert result.findings[0].message.endswith("and 3 more variants")
+
+
+@pytest.mark.parametrize(
+    ("change", "code", "count"),
+    [
+        (("period: 4, except: [Cr, Cu, Zn]", "among: [V]"), "one-variant", 1),
+        (("block: d, period: 4, except: [Cr, Cu, Zn]", "among: [V, Mn], charge: 1+"), "rule-differs", 2),
+    ],
+)
+def test_weaknesses_of_the_whole(change, code, count):
+    result = vet(TANK.replace(*change))
+    assert (code, "weakness", count) in findings(result)
+    assert result.sound == result.possible
+    assert ": sound; " in result.words
+
+
+def test_working_of_very_different_length_is_a_weakness():
+    text = TANK.split("draw:")[0] + (
+        "draw:\n  metal: {among: [He, V]}\nstory: A paper exercise.\n"
+        "parts:\n  - calculate: total energy\n    of: metal\n    marks: 4\n"
+    )
+    assert findings(vet(text)) == [("unequal-working", "weakness", 2)]
+    without = text.replace("    marks: 4\n", "")
+    assert [code for code, _, _ in findings(vet(without))] == ["unequal-marks", "unequal-working"]
+
+
+def test_every_wording_is_vetted_not_only_the_first():
+    text = TANK + "    ask: ['Find it.', 'Find it for `Xq`.']\n"
+    result = vet(text)
+    assert (result.sound, findings(result)) == (0, [("text", "fault", 7)])
+
+
+def test_an_unreadable_file_is_a_finding(tmp_path):
+    result = vetted_item(tmp_path / "none.yaml")
+    assert [code for code, _, _ in findings(result)] == ["unreadable"]
+    (tmp_path / "plan.yaml").write_text("plan: P\nitems: [nowhere-to-be-found]\n", encoding="utf-8")
+    (result,) = vetted_plan(tmp_path / "plan.yaml")
+    assert [code for code, _, _ in findings(result)] == ["no-item"]
+
+
+def test_a_plan_is_vetted_under_its_own_terms(tmp_path):
+    """With 5s held as the only electron the item has no variants; with a fixed metal it has one."""
+    write_item(tmp_path, TANK)
+    plan = tmp_path / "plan.yaml"
+    plan.write_text("plan: P\nitems:\n  - item: tank\n    fix: {metal: V}\n", encoding="utf-8")
+    (result,) = vetted_plan(plan)
+    assert (result.possible, [code for code, _, _ in findings(result)]) == (1, ["one-variant"])
