@@ -50,24 +50,19 @@ def joined(pieces: Iterable[Any], between: str = "") -> Markup:
 @functools.cache
 def tex_environment() -> Environment:
     """The environment of `templates/latex`."""
-    return _environment(
-        "latex",
-        block_start_string="<%",
-        block_end_string="%>",
-        variable_start_string="<<",
-        variable_end_string=">>",
-        comment_start_string="<#",
-        comment_end_string="#>",
-    )
+    return _environment("latex", ("<%", "%>"), ("<<", ">>"), ("<#", "#>"))
 
 
 @functools.cache
 def html_environment() -> Environment:
     """The environment of `templates/html`."""
-    return _environment("html")
+    return _environment("html", ("{%", "%}"), ("{{", "}}"), ("{#", "#}"))
 
 
-def _environment(folder: str, **delimiters: str) -> Environment:
+_Pair = tuple[str, str]
+
+
+def _environment(folder: str, block: _Pair, variable: _Pair, comment: _Pair) -> Environment:
     from jinja2 import Environment, FileSystemLoader, StrictUndefined, TemplateSyntaxError, nodes
 
     class Strict(Environment):
@@ -88,7 +83,12 @@ def _environment(folder: str, **delimiters: str) -> Environment:
         lstrip_blocks=True,
         keep_trailing_newline=True,
         auto_reload=False,
-        **delimiters,
+        block_start_string=block[0],
+        block_end_string=block[1],
+        variable_start_string=variable[0],
+        variable_end_string=variable[1],
+        comment_start_string=comment[0],
+        comment_end_string=comment[1],
     )
     made.filters["join"] = joined
     return made

@@ -16,6 +16,7 @@ from authoring.press.language import Words
 if TYPE_CHECKING:
     from jinja2 import Environment
 
+_TOGETHER = 24  # so few rows that no block of columns needs pages of its own
 _CODE_CHARACTERS = 9  # bold capitals are wide: room as for so many
 
 
@@ -58,6 +59,7 @@ def glance_values(paper_set: PaperSet, maker: KeyMaker, room: float) -> dict[str
     return {
         "blocks": [columns[start:end] for start, end in runs],
         "papers": rows,
+        "together": len(rows) <= _TOGETHER,
         "ids": bool(longest),
         "code_width": medium.text(f"{width(_CODE_CHARACTERS):.1f}"),
         "id_width": medium.text(f"{width(longest) if longest else 0:.1f}"),

@@ -13,6 +13,8 @@ from authoring.papers.questions import PartAsked, Question
 from authoring.press.language import Words
 from authoring.press.medium import Medium, parted
 from authoring.press.sheets import ExhibitView, blank_label
+from authoring.specs.prose import read_prose
+from authoring.tasks.explain import NOT
 from authoring.tasks.solved import Answer, BlankTable, Options, Solved
 from authoring.working.lines import Point
 from authoring.working.nodes import Math, Plain
@@ -55,6 +57,7 @@ class KeyPart:
     asks: Markup
     marks: Markup
     answer: Markup
+    model: Markup
     accepted: Markup
     first_width: Markup
     lines: tuple[LineView, ...]
@@ -112,7 +115,7 @@ class KeyMaker:
         if choices:
             return KeyPart(
                 medium.text(part.label), self.words("answer_one_of"), medium.text(f"[{part.marks}]"), Markup(),
-                Markup(), medium.text("0"), (), (), (), (), (), (), choices,
+                Markup(), Markup(), medium.text("0"), (), (), (), (), (), (), choices,
             )  # fmt: skip
         shown_firsts = [len(to_text(first)) for step in solved.steps if (first := parted(step.line.chain)[0])]
         fitting = [length for length in shown_firsts if length <= _MOST_FIRST]
@@ -121,22 +124,39 @@ class KeyMaker:
             asks=medium.text(_asks(solved)),
             marks=medium.text(f"[{part.marks}]"),
             answer=self.answer(answer),
+            model=self.model(solved),
             accepted=self.accepted(solved),
             first_width=medium.text(f"{max(fitting, default=0) * _LETTER + 0.3:.1f}"),
             lines=tuple(self.lines(solved)),
             exhibits=tuple(_filled(each, medium) for each in solved.exhibits if isinstance(each, BlankTable)),
             options=tuple(self.options(solved)),
             wrong=tuple(self.wrong(solved)),
-            rubric=tuple((medium.text(code), medium.words(text)) for code, text in solved.rubric),
+            rubric=tuple(self.rubric(solved)),
             notes=tuple(medium.prose(note) for note in part.notes),
             choices=(),
         )
 
     def answer(self, answer: Answer) -> Markup:
         """The answer as a marker looks for it."""
-        if answer.kind in ("text", "electron", "letter"):
+        if answer.kind == "text":
+            return Markup()
+        if answer.kind in ("electron", "letter"):
             return self.medium.number(answer.shown)
         return self.medium.node(answer.node)
+
+    def model(self, solved: Solved) -> Markup:
+        """A model answer in words, where it says more than the rubric does."""
+        text = solved.answer.shown
+        said = all(entry.rstrip(".;") in text for code, entry in solved.rubric if code != NOT)
+        if solved.answer.kind != "text" or (solved.rubric and said):
+            return Markup()
+        return self.medium.prose(read_prose(text)[0])
+
+    def rubric(self, solved: Solved) -> Iterator[tuple[Markup, Markup]]:
+        """What earns each mark, and what does not."""
+        for code, text in solved.rubric:
+            head = self.words("rubric_not") if code == NOT else self.medium.text(code)
+            yield head, self.medium.prose(read_prose(text)[0])
 
     def lines(self, solved: Solved) -> Iterator[LineView]:
         """The working with its points; where a rubric says what earns them, the points stand there."""

@@ -47,21 +47,22 @@ def _job(paper_set: PaperSet, name: str, make: _Make, tick: Tick, wide: bool = F
     medium = TexMedium("," if layout.decimal == "comma" else ".", wide)
     words = Words(paper_set.plan.language, medium.text)
     try:
-        body = "".join([*_opening(paper_set, words), *make(paper_set, medium, words, engine, tick), _END])
+        opening = _opening(words, layout.two_sided and make is _sheets)
+        body = "".join([*opening, *make(paper_set, medium, words, engine, tick), _END])
     except NeedsWide:
         return _job(paper_set, name, make, tick, wide=True)
     paper: PaperSize = "a4" if layout.paper == "A4" else "letter"
     return Job(preamble(engine, paper, layout.type_size, fonts_for(body if wide else "")) + body, name, engine)
 
 
-def _opening(paper_set: PaperSet, words: Words) -> Iterator[str]:
+def _opening(words: Words, two_sided: bool) -> Iterator[str]:
     macros = (shipped_folder("templates") / "latex" / "macros.tex").read_text(encoding="utf-8")
     yield rendered(
         tex_environment(),
         "document.tex",
         macros=Tex(macros),
         words=words,
-        two_sided=paper_set.plan.layout.two_sided,
+        two_sided=two_sided,
         number_page=Tex(r"{\number\pagenow}"),
         number_pages=Tex(r"{\number\pagetotal}"),
     )

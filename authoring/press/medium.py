@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from typing import Protocol
@@ -13,11 +12,12 @@ from authoring.faults import ContentError
 from authoring.press.chart import drawing
 from authoring.press.chart_latex import chart_latex
 from authoring.press.chart_svg import chart_svg
+from authoring.press.decimals import prose_with_decimal, symbols, with_decimal
 from authoring.press.environment import Tex
 from authoring.tasks.solved import Chart
 from authoring.working.latex import to_latex
 from authoring.working.mathml import NAMESPACE, escape_xml, math_element
-from authoring.working.nodes import Chain, Inline, Math, Node, Plain, Prose, Sym, Words
+from authoring.working.nodes import Chain, Inline, Node, Prose, Words
 from authoring.working.prose_html import inline_html, prose_html
 from authoring.working.prose_latex import inline_latex, prose_latex
 from authoring.working.tex_escape import escape_tex, needs_wide
@@ -65,8 +65,6 @@ class Medium(Protocol):
         """A chart."""
 
 
-_SYMBOL = re.compile(r"\b([A-Za-z])_([a-z]+)\b|\bn\*")
-_DIGIT_POINT = re.compile(r"(?<=\d)\.(?=\d)")
 NOTHING = Words("")
 
 
@@ -78,22 +76,6 @@ def parted(chain: Chain) -> tuple[Node | None, Node]:
     if relation == ":":
         return Chain(chain.first, ((":", NOTHING),)), Chain(after, chain.rest[1:])
     return chain.first, Chain(NOTHING, chain.rest)
-
-
-def symbols(text: str, decimal: str) -> tuple[Inline, ...]:
-    """Words with `Z_eff` and `n*` set as formulas."""
-    found: list[Inline] = []
-    end = 0
-    for match in _SYMBOL.finditer(text):
-        found.append(Plain(with_decimal(text[end : match.start()], decimal)))
-        found.append(Math(Sym(match[1], match[2]) if match[1] else Sym("n", sup="*")))
-        end = match.end()
-    return (*found, Plain(with_decimal(text[end:], decimal)))
-
-
-def with_decimal(text: str, decimal: str) -> str:
-    """A text in which the points between digits are the decimal mark."""
-    return text if decimal == "." else _DIGIT_POINT.sub(decimal, text)
 
 
 @dataclass(frozen=True, slots=True)
@@ -119,7 +101,8 @@ class TexMedium:
 
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""
-        return self._printed(lambda: prose_latex(prose, decimal=self.decimal, wide=self.wide))
+        text = prose_with_decimal(prose, self.decimal)
+        return self._printed(lambda: prose_latex(text, decimal=self.decimal, wide=self.wide))
 
     def inline(self, children: Iterable[Inline]) -> Markup:
         """Running text without paragraphs."""
@@ -169,7 +152,8 @@ class HtmlMedium:
 
     def prose(self, prose: Prose) -> Markup:
         """Paragraphs, lists and tables."""
-        return Markup(prose_html(prose, decimal=self.decimal).replace(_XMLNS, ""))
+        text = prose_with_decimal(prose, self.decimal)
+        return Markup(prose_html(text, decimal=self.decimal).replace(_XMLNS, ""))
 
     def inline(self, children: Iterable[Inline]) -> Markup:
         """Running text without paragraphs."""

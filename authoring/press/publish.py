@@ -66,7 +66,8 @@ def page_ranges(pdf: Path) -> dict[str, tuple[int, int]]:
     from pypdf import PdfReader
 
     reader = PdfReader(pdf)
-    starts = [(str(entry.title), reader.get_destination_page_number(entry)) for entry in reader.outline]
+    marks = [entry for entry in reader.outline if not isinstance(entry, list)]
+    starts = [(str(entry.title), reader.get_destination_page_number(entry)) for entry in marks]
     ends = [start for _, start in starts[1:]] + [len(reader.pages)]
     return {code: ((start or 0) + 1, end or 0) for (code, start), end in zip(starts, ends, strict=True)}
 

@@ -20,6 +20,7 @@ from authoring.working.text import to_text
 _ROMAN = ("i", "ii", "iii", "iv", "v", "vi", "vii", "viii", "ix", "x", "xi", "xii")
 _SPACE = {"none": 0.0, "narrow": 0.7, "normal": 1.0, "wide": 1.5}
 _MOST_LINES = 30
+_GRID = 12  # questions in a row of the table of marks
 # Characters of an option that leave room for four, or two, side by side.
 _FOUR_ABREAST, _TWO_ABREAST = 13, 30
 
@@ -82,14 +83,14 @@ class FrontView:
 
 @dataclass(frozen=True, slots=True)
 class PaperView:
-    """A paper: its code, whom it is for, and the marks of its questions."""
+    """A paper: its code, whom it is for, and rows of (question, marks)."""
 
     code: Markup
     candidate: Markup
     name: Markup
     seat: Markup
     marks: Markup
-    grid: tuple[tuple[int, int], ...]
+    grid: tuple[tuple[tuple[int, int], ...], ...]
     total: int
 
 
@@ -123,7 +124,7 @@ class SheetMaker:
             name=medium.text(who.name if who else ""),
             seat=medium.text(who.seat if who else ""),
             marks=self.words.count("marks", paper.marks),
-            grid=tuple((at, question.marks) for at, question in enumerate(paper.questions, start=1)),
+            grid=_grid(paper),
             total=paper.marks,
         )
 
@@ -163,6 +164,11 @@ class SheetMaker:
         return min(_MOST_LINES, math.ceil(solved.space * _SPACE[self.plan.layout.space]))
 
 
+def _grid(paper: Paper) -> tuple[tuple[tuple[int, int], ...], ...]:
+    pairs = [(at, question.marks) for at, question in enumerate(paper.questions, start=1)]
+    return tuple(tuple(pairs[at : at + _GRID]) for at in range(0, len(pairs), _GRID))
+
+
 def mark_words(part: PartAsked, medium: Medium) -> Markup:
     """`[3]`."""
     return medium.text(f"[{part.marks}]")
@@ -200,7 +206,7 @@ def exhibit_view(exhibit: Exhibit, medium: Medium) -> ExhibitView:
 def _abreast(nodes: list[Node]) -> int:
     longest = max(len(to_text(node)) for node in nodes)
     if longest <= _FOUR_ABREAST:
-        return 4
+        return 4 if len(nodes) <= 4 else 3
     return 2 if longest <= _TWO_ABREAST else 1
 
 
