@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 from authoring.faults import ContentError
 from authoring.shielding.quantity import Target, quantity
 from authoring.shielding.solve import work
@@ -12,6 +14,9 @@ from authoring.tasks.setting import Setting, electron_named
 from authoring.tasks.several import species_listed
 from authoring.tasks.solved import Chart
 from authoring.working.nodes import Inline, Math, Num, Paragraph, Plain, TableBlock
+
+
+_NUMBER = re.compile(r"[-−]?[0-9]+(?:\.[0-9]+)?")
 
 
 def tables_of(item: Item, setting: Setting) -> tuple[TableBlock, ...]:
@@ -35,10 +40,17 @@ def inlines(text: str) -> tuple[Inline, ...]:
 def _typed(table: GivenTable) -> TableBlock:
     return TableBlock(
         tuple(inlines(cell) for cell in table.header),
-        tuple(tuple(inlines(cell) for cell in row) for row in table.rows),
+        tuple(tuple(_cell(cell) for cell in row) for row in table.rows),
         inlines(table.caption),
         inlines(table.source),
     )
+
+
+def _cell(text: str) -> tuple[Inline, ...]:
+    """A typed cell; a number is one, so that it prints with the plan's decimal mark."""
+    if _NUMBER.fullmatch(text.strip()):
+        return (Math(Num(text.strip().replace("-", "−"))),)
+    return inlines(text)
 
 
 def _computed(table: GivenTable, setting: Setting) -> TableBlock:
