@@ -15,7 +15,6 @@ from authoring.tasks.several import species_listed
 from authoring.tasks.solved import Chart
 from authoring.working.nodes import Inline, Math, Num, Paragraph, Plain, TableBlock
 
-
 _NUMBER = re.compile(r"[-−]?[0-9]+(?:\.[0-9]+)?")
 
 
