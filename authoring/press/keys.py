@@ -95,6 +95,7 @@ class KeyMaker:
         self.paper_set = paper_set
         self.medium = medium
         self.words = words
+        self._what: dict[str, Markup] = {}
         self._cells: dict[int, tuple[Markup, ...]] = {}
 
     def question(self, question: Question, number: int) -> KeyQuestion:
@@ -170,7 +171,9 @@ class KeyMaker:
 
     def point(self, point: Point) -> PointView:
         """A mark point."""
-        return PointView(self.medium.text(point.code), point.follow_through, self.medium.words(point.what))
+        if point.what not in self._what:
+            self._what[point.what] = self.medium.words(point.what)
+        return PointView(self.medium.text(point.code), point.follow_through, self._what[point.what])
 
     def options(self, solved: Solved) -> Iterator[tuple[Markup, Markup, Markup]]:
         """Each option, and which is right or which slip is behind it."""

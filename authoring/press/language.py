@@ -6,7 +6,7 @@ import functools
 import string
 import tomllib
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from markupsafe import Markup
 
@@ -36,9 +36,17 @@ class Words:
 
     language: str
     escape: Callable[[str], Markup]
+    _plain: dict[str, Markup] = field(default_factory=dict, init=False, repr=False, compare=False)
 
     def __call__(self, key: str, **values: Markup | int) -> Markup:
         """The phrase of a key; a text put in must be ready (see `Medium.text`)."""
+        if values:
+            return self._filled(key, values)
+        if key not in self._plain:
+            self._plain[key] = self._filled(key, values)
+        return self._plain[key]
+
+    def _filled(self, key: str, values: Mapping[str, Markup | int]) -> Markup:
         pieces: list[str] = []
         for literal, name, _, _ in string.Formatter().parse(phrases(self.language)[key]):
             pieces.append(str(self.escape(literal)))

@@ -2,8 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from concurrent.futures import ThreadPoolExecutor
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -11,7 +10,7 @@ from authoring.papers.assemble import PaperSet, Progress
 from authoring.press.html_documents import write_key_html, write_sheets_html
 from authoring.press.latex_documents import key_job, sheets_job
 from authoring.press.split import split_pdf
-from authoring.press.tex import PACKAGES, Engine, Job, compile_many, find_engine
+from authoring.press.tex import PACKAGES, Compiling, Engine, Job, find_engine
 
 SPLIT_FOLDER = "candidates"
 _TIME_LIMIT = 120.0
@@ -44,18 +43,20 @@ def publish(
     Raises OutsideError where TeX fails, ContentError for a text that cannot be printed or an unknown language.
     """
     tick = _counted(progress, len(paper_set.papers) * _ROUNDS)
-    jobs = (sheets_job(paper_set, tick), key_job(paper_set, tick))
-    files = [_write_source(job, into) for job in jobs]
-    missing = _missing(jobs)
     limit = time_limit or _TIME_LIMIT + _TIME_PER_PAPER * len(paper_set.papers)
-    with ThreadPoolExecutor(1) as pool:
-        setting = None if missing else pool.submit(compile_many, jobs, into, limit)
+    jobs: list[Job] = []
+    files = ["sheets.html", "key.html"]
+    with Compiling(into, limit) as compiling:
+        for make in (sheets_job, key_job):
+            jobs.append(make(paper_set, tick))
+            files.append(_write_source(jobs[-1], into))
+            if find_engine(jobs[-1].engine):
+                compiling.start(jobs[-1])
         write_sheets_html(paper_set, into / "sheets.html", tick)
         write_key_html(paper_set, into / "key.html", tick)
-        files += ["sheets.html", "key.html"]
-        if setting is not None:
-            files += [path.name for path in setting.result()]
-    if split and not missing:
+        files += [path.name for path in compiling.finished()]
+    missing = _missing(jobs)
+    if split and "sheets.pdf" in files:
         files += _split(paper_set, into)
     engines = tuple((job.name, job.engine) for job in jobs)
     return Published(tuple(sorted(files)), engines, missing)
@@ -85,7 +86,7 @@ def _write_source(job: Job, into: Path) -> str:
     return name
 
 
-def _missing(jobs: tuple[Job, ...]) -> str:
+def _missing(jobs: Sequence[Job]) -> str:
     engines = dict.fromkeys(job.engine for job in jobs if find_engine(job.engine) is None)
     if not engines:
         return ""

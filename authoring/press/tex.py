@@ -16,10 +16,10 @@ import tempfile
 import threading
 import time
 from collections.abc import Sequence
-from concurrent.futures import ThreadPoolExecutor
+from concurrent.futures import Future, ThreadPoolExecutor
 from dataclasses import dataclass, field
 from pathlib import Path
-from typing import Literal
+from typing import Literal, Self
 
 from authoring.faults import OutsideError
 
@@ -102,15 +102,37 @@ def compile_tex(source: str, name: str, into: Path, engine: Engine, time_limit: 
 
 def compile_many(jobs: Sequence[Job], into: Path, time_limit: float = 120.0) -> tuple[Path, ...]:
     """Set several documents side by side, as many at once as there are processors; the first error ends them all."""
-    running = _Running()
-    workers = max(1, min(len(jobs), os.cpu_count() or 1))
-    with ThreadPoolExecutor(workers) as pool:
-        waiting = [pool.submit(_compile, job, into, time_limit, running) for job in jobs]
-        try:
-            return tuple(result.result() for result in waiting)
-        except BaseException:
-            running.stop()
-            raise
+    with Compiling(into, time_limit) as compiling:
+        for job in jobs:
+            compiling.start(job)
+        return compiling.finished()
+
+
+class Compiling:
+    """Documents set side by side while others are still being written; leaving by an error ends them all."""
+
+    def __init__(self, into: Path, time_limit: float = 120.0) -> None:
+        self._into = into
+        self._time_limit = time_limit
+        self._running = _Running()
+        self._pool = ThreadPoolExecutor(max(1, os.cpu_count() or 1))
+        self._waiting: list[Future[Path]] = []
+
+    def __enter__(self) -> Self:
+        return self
+
+    def __exit__(self, kind: object, error: BaseException | None, trace: object) -> None:
+        if error is not None:
+            self._running.stop()
+        self._pool.shutdown()
+
+    def start(self, job: Job) -> None:
+        """Begin a document as soon as a processor is free."""
+        self._waiting.append(self._pool.submit(_compile, job, self._into, self._time_limit, self._running))
+
+    def finished(self) -> tuple[Path, ...]:
+        """Wait for all documents, in the order they were begun. Raises OutsideError of the first that failed."""
+        return tuple(result.result() for result in self._waiting)
 
 
 def _compile(job: Job, into: Path, time_limit: float, running: _Running) -> Path:

@@ -83,7 +83,7 @@ def to_mathml(node: Node, *, decimal: str = ".") -> str:
 
 def escape_xml(text: str) -> str:
     """Text for an element's content or a double-quoted attribute of XML or HTML; characters XML forbids go out as �."""
-    safe = "".join(c if _is_xml(c) else "\N{REPLACEMENT CHARACTER}" for c in text)
+    safe = text if text.isprintable() else "".join(c if _is_xml(c) else "\N{REPLACEMENT CHARACTER}" for c in text)
     return safe.replace("&", "&amp;").replace("<", "&lt;").replace(">", "&gt;").replace('"', "&quot;")
 
 
