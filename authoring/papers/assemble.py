@@ -11,6 +11,7 @@ from authoring.faults import Fault, FaultsFound, UsageError
 from authoring.papers.chance import Chance, codes
 from authoring.papers.questions import Kept, Question, Terms, parts_of, question, wordings
 from authoring.papers.variants import Pool, Variant, enumerated
+from authoring.papers.vet import with_count
 from authoring.specs.plan import Plan
 from authoring.specs.roster import Candidate
 
@@ -91,7 +92,7 @@ def assembled(
         if progress:
             progress(at + 1, len(candidates))
     if solver.faults:
-        raise FaultsFound(list(dict.fromkeys(solver.faults)))
+        raise FaultsFound([with_count(fault, count) for fault, count in solver.faults.values()])
     return PaperSet(plan, terms, seed, tuple(papers))
 
 
@@ -145,7 +146,7 @@ class _Solver:
 
     def __init__(self, terms: Terms) -> None:
         self.terms = terms
-        self.faults: list[Fault] = []
+        self.faults: dict[tuple[str, object], tuple[Fault, int]] = {}
         self._made: dict[tuple[Variant, int], Question] = {}
         self._kept = Kept()
 
@@ -156,7 +157,9 @@ class _Solver:
             try:
                 self._made[key] = question(variant, self.terms, turn, self._kept)
             except FaultsFound as error:
-                self.faults += error.faults
+                for fault in error.faults:
+                    first, count = self.faults.get((fault.code, fault.source), (fault, 0))
+                    self.faults[fault.code, fault.source] = (first, count + 1)
                 self._made[key] = Question(variant, "", (), (), (), (), None, (), ())
         return self._made[key]
 

@@ -128,7 +128,7 @@ class _Seen:
 
     def vetted(self, possible: int) -> Vetted:
         """What was found in all of them."""
-        found = [(_with_count(fault, count), count) for fault, count in self.faults.values()]
+        found = [(with_count(fault, count), count) for fault, count in self.faults.values()]
         found += [(weakness, self.sound) for weakness in self.weaknesses()]
         findings, counts = tuple(each for each, _ in found), tuple(count for _, count in found)
         return Vetted(self.item.name, possible, self.sound, findings, min(self.marks, default=0), counts)
@@ -156,7 +156,8 @@ class _Seen:
         return Fault(code, message, self.item.at(step), "weakness")
 
 
-def _with_count(first: Fault, count: int) -> Fault:
+def with_count(first: Fault, count: int) -> Fault:
+    """A fault of several variants, told once."""
     if count == 1:
         return first
     plural = "s" if count > 2 else ""

@@ -121,6 +121,7 @@ class _Reader:
     def __init__(self, tree: Tree) -> None:
         self.tree = tree
         self.faults: list[Fault] = []
+        self.broken: set[str] = set()  # draws with faults of their own: what rests on them is not complained about
 
     def fault(self, code: str, message: str, source: Source) -> None:
         self.faults.append(Fault(code, message, source))
@@ -189,11 +190,12 @@ def _draws(reader: _Reader, data: object) -> dict[str, Draw]:
         draw, faults = validated(model, shaped, reader.tree, ("draw", name))
         reader.faults += faults
         if draw is None:
+            reader.broken.add(name)
             continue
         if isinstance(draw, SpeciesDraw) and not (draw.among or draw.block or draw.period or draw.group):
             reader.fault("empty-pool", f"{name} is drawn from nothing; say among, block, period or group", place)
         for other in rests_on(draw):
-            if other not in found:
+            if other not in found and other not in reader.broken:
                 hint = "; it is drawn later, so put it first" if other in data and other != name else ""
                 reader.fault("undefined", f"{name} rests on {other!r}, which is not drawn before it{hint}", place)
         found[name] = draw
@@ -274,7 +276,7 @@ def _check_names(reader: _Reader, item: Item) -> None:
         for each in part.parts if isinstance(part, Alternative) else (part,):
             used += [(template.names, each.source) for _, template in each.templates]
     for names, place in used:
-        for name in sorted(names - set(drawn)):
+        for name in sorted(names - reader.broken.union(drawn)):
             reader.fault("undefined", f"{name!r} is not drawn{suggestion(name, drawn)}", place)
 
 
