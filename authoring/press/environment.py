@@ -94,7 +94,7 @@ def _environment(folder: str, block: _Pair, variable: _Pair, comment: _Pair) -> 
     return made
 
 
-def rendered(environment: Environment, name: str, **values: Any) -> str:
+def rendered(environment: Environment, name: str, /, **values: Any) -> str:
     """A template with its values. Raises FaultsFound with a fault at the template's file and line."""
     from jinja2 import TemplateError, TemplateSyntaxError
 

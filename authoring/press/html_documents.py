@@ -96,7 +96,7 @@ def _key(paper_set: PaperSet, tick: Tick) -> Iterator[str]:
     glance = glance_values(paper_set, maker, _ROOM)
     yield rendered(html_environment(), "glance.html", words=words, front=heads.front(), **glance)
     for paper in paper_set.papers:
-        view = heads.paper(paper)
+        view = heads.paper(paper, named=False)
         yield rendered(
             html_environment(), "key_paper.html", paper=view, questions=fragments.of(paper), words=words
         )

@@ -91,7 +91,7 @@ def _key(paper_set: PaperSet, medium: TexMedium, words: Words, engine: Engine, t
     shared = {"words": words, "front": heads.front(), "empty": Tex()}
     yield rendered(tex_environment(), "glance.tex", **glance_values(paper_set, maker, _room(paper_set)), **shared)
     for paper in paper_set.papers:
-        view = heads.paper(paper)
+        view = heads.paper(paper, named=False)
         yield rendered(
             tex_environment(), "key_paper.tex", paper=view, foot=view.candidate, questions=fragments.of(paper), **shared
         )

@@ -175,4 +175,4 @@ class HtmlMedium:
 
     def chart(self, chart: Chart) -> Markup:
         """An inline `<svg>`."""
-        return Markup(chart_svg(drawing(chart, self.decimal), chart.description))
+        return Markup(chart_svg(drawing(chart, self.decimal), with_decimal(chart.description, self.decimal)))

@@ -115,13 +115,13 @@ class SheetMaker:
             conventions=conventions_of(plan, medium),
         )
 
-    def paper(self, paper: Paper) -> PaperView:
-        """The head of one paper."""
+    def paper(self, paper: Paper, named: bool = True) -> PaperView:
+        """The head of one paper; a key has no names, and so never needs the fonts for them."""
         medium, who = self.medium, paper.candidate
         return PaperView(
             code=medium.text(paper.code),
             candidate=medium.text(who.id if who else ""),
-            name=medium.text(who.name if who else ""),
+            name=medium.text(who.name if who and named else ""),
             seat=medium.text(who.seat if who else ""),
             marks=self.words.count("marks", paper.marks),
             grid=_grid(paper),
