@@ -41,8 +41,8 @@ Text of stories, wordings, captions and notes is a small Markdown:
                        \\times, Greek letters, units
   \\*                   the character itself
 
-Raw TeX and HTML are plain text. Folded text (`>`) is refused, because a fault in
-it could not be placed; use `|`.
+Raw TeX and HTML are plain text. Folded text (`>`) is refused, because a fault
+in it could not be placed; use `|`.
 
 Drawn values stand in double braces:
 
@@ -90,8 +90,8 @@ leaves in the set's folder:
     1a: ok                              # exactly as the key
     1b: 4.15
 
-Write lines as the candidate did: × x * ·, − -, ^ or superscripts, fractions with
-/, chains of =, ≈ and →, decimal point or comma, units, configurations
+Write lines as the candidate did: × x * ·, − -, ^ or superscripts, fractions
+with /, chains of =, ≈ and →, decimal point or comma, units, configurations
 (`[Ar] 3d3 4s2`, `1s²2s²2p²`), groups (`(1s)2(2s,2p)8`), orderings (`Na > Mg`),
 a letter for a choice, words. `~~…~~` is crossed out and does not count. A part
 that is left out, or empty, was not answered. A line that cannot be read is
@@ -105,8 +105,8 @@ MARKING = """\
 earlier values: right under the course's practice earns its points (marked ft
 where an earlier value was wrong); right under a slip names the slip and loses
 the points it spoils; wrong arithmetic is said to be that; anything else is
-*unexplained* and left to a person. `shieldwright mark FOLDER` without a file asks
-for one paper after the other at the terminal. Everything goes into the ledger
+*unexplained* and left to a person. `shieldwright mark FOLDER` without a file
+asks for one paper after the other at the terminal. Everything goes into the ledger
 in the set's folder; nothing in it is ever overwritten.
 
 Proposed marks are proposals: a person confirms them, and your institution's

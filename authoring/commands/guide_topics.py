@@ -97,7 +97,7 @@ def quantity_text(name: str) -> str:
     slips = ", ".join(slip.name for slip in shipped().touching(what.name)) or "none"
     return "\n".join(
         [
-            f"{what.name}: {what.says}",
+            wrapped(f"{what.name}: {what.says}"),
             "",
             entries(rows),
             "",
@@ -138,7 +138,7 @@ def task_text(name: str) -> str:
     """One task: its own keys and an example."""
     found = task(name)
     base = TargetFields if issubclass(found.fields, TargetFields) else PartFields
-    lines = [f"{found.name}: {found.says}", "", "  Its keys:", entries(keys(found.fields, base), 4)]
+    lines = [wrapped(f"{found.name}: {found.says}"), "", "  Its keys:", entries(keys(found.fields, base), 4)]
     if base is TargetFields:
         lines += ["", "  What says of which species, and how the answer is given:"]
         lines += [entries(keys(TargetFields, PartFields), 4)]
