@@ -106,8 +106,8 @@ earlier values: right under the course's practice earns its points (marked ft
 where an earlier value was wrong); right under a slip names the slip and loses
 the points it spoils; wrong arithmetic is said to be that; anything else is
 *unexplained* and left to a person. `shieldwright mark FOLDER` without a file
-asks for one paper after the other at the terminal. Everything goes into the ledger
-in the set's folder; nothing in it is ever overwritten.
+asks for one paper after the other at the terminal. Everything goes into the
+ledger in the set's folder; nothing in it is ever overwritten.
 
 Proposed marks are proposals: a person confirms them, and your institution's
 assessment and data-protection rules apply. Names never enter the ledger.
