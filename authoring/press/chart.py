@@ -157,7 +157,10 @@ def _levels(chart: Chart, decimal: str) -> Drawing:
     column = _LEVEL_WIDTH + 2 * _LEVEL_GAP + longest * _LETTER
     width = column * len(chart.series)
     scale, strokes, labels = _axis(
-        (value for series in chart.series for _, value in series.points), _LEVEL_LEFT, width, decimal
+        (value for series in chart.series for _, value in series.points),
+        _LEVEL_LEFT,
+        _LEVEL_GAP + _LEVEL_WIDTH,  # lines behind labels would strike them through
+        decimal,
     )
     labels.append(Label((0, _HEIGHT - 3.2), chart.y_words, "l"))
     for index, series in enumerate(chart.series):

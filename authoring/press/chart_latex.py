@@ -1,9 +1,11 @@
 """Press: a chart as a LaTeX picture: paths in the language of the PDF itself, words by TeX; needs no package.
 
-The macros `\\chartpath`, `\\chartmark` stand in `templates/latex/macros.tex`.
+The macros `\\chartsize`, `\\chartpath` and `\\chartwords` stand in `templates/latex/macros.tex`.
 """
 
 from __future__ import annotations
+
+import math
 
 from authoring.press.chart import Drawing, Marker, Stroke
 from authoring.working.tex_escape import escape_tex
@@ -17,7 +19,8 @@ def chart_latex(drawing: Drawing, wide: bool = False) -> str:
     """The picture; `wide` lets words hold what only LuaTeX prints."""
     paths = " ".join([*map(_stroke, drawing.strokes), *map(_marker, drawing.markers)])
     lines = [
-        rf"\begingroup\setlength{{\unitlength}}{{1mm}}\begin{{picture}}({drawing.width:.1f},{drawing.height:.1f})(0,0)%",
+        rf"\begingroup\chartsize{{{math.ceil(drawing.width * 10)}}}%",
+        rf"\begin{{picture}}({drawing.width:.1f},{drawing.height:.1f})(0,0)%",
         rf"\put(0,0){{\chartpath{{{paths}}}}}%",
     ]
     for label in drawing.labels:

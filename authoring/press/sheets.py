@@ -182,7 +182,8 @@ def conventions_of(plan: Plan, medium: Medium) -> tuple[tuple[Markup, Markup], .
     found = []
     for words, value in plan.conventions.items():
         says = fields[words].metadata["says"] if words in fields else words
-        found.append((medium.text(says[:1].upper() + says[1:]), medium.number(value)))
+        heading = says if says.startswith("n*") else says[:1].upper() + says[1:]
+        found.append((medium.words(heading), medium.number(value)))
     return tuple(found)
 
 

@@ -191,6 +191,16 @@ def test_german_words_and_decimal_commas(tmp_path: Path) -> None:
     assert not re.findall(r"\d\.\d", sheet + key)
 
 
+def test_conventions_stand_on_the_first_page_where_there_is_no_data_page(tmp_path: Path) -> None:
+    """What the course does otherwise is said before the questions."""
+    made = small_set(tmp_path, (None,), "conventions: {1s pair: '0.35', outside: '0.00'}\n")
+    printed(made, tmp_path / "out")
+    page = pages_of(tmp_path / "out" / "sheets.pdf")[0]
+    said = "Conventions of this paper The other electron of 1s: 0.35 Each electron of a group further out: 0.00"
+    assert page.index("Instructions") < page.index(said) < page.index("Marrowgate")
+    assert "The other electron of 1s: 0.35" in (tmp_path / "out" / "sheets.html").read_text()
+
+
 def test_a_long_list_of_answers_repeats_its_head(tmp_path: Path) -> None:
     """Forty papers: the answers at a glance go over pages, each with the heads of its columns."""
     made = small_set(tmp_path, (None,) * 54, "layout: {space: none}\n")
