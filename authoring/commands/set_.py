@@ -63,7 +63,7 @@ def command(
     made = _assembled(read, candidates, checked_seed(seed) if seed is not None else new_seed(), allow_repeats)
     with whole_folder(target, replace) as scratch:
         scratch.joinpath(RECORD).write_text(written(made), encoding="utf-8")
-        scratch.joinpath("scripts.yaml").write_text(write_blank_form(form_of(made)), encoding="utf-8")
+        scratch.joinpath("scripts.yaml").write_text(write_blank_form(*form_of(made)), encoding="utf-8")
         with progress_bar("printing") as progress:
             published = publish(made, scratch, split=split, progress=progress, time_limit=time_limit)
     _say(made, target, published, as_json)
@@ -98,16 +98,16 @@ def _assembled(plan: Plan, candidates: Sequence[Candidate | None], seed: str, al
         )
 
 
-def form_of(made: PaperSet) -> list[tuple[str, str | None, list[str]]]:
-    """What the blank script form needs: code, candidate id and part labels of each paper."""
-    return [
+def form_of(made: PaperSet) -> tuple[list[tuple[str, list[str]]], dict[str, str]]:
+    """What the blank script form needs: code and part labels of each paper, and candidate ids by code."""
+    papers = [
         (
             paper.code,
-            paper.candidate.id if paper.candidate else None,
             [f"{number}{part.label}" for number, question in enumerate(paper.questions, 1) for part in question.parts],
         )
         for paper in made.papers
     ]
+    return papers, {paper.code: paper.candidate.id for paper in made.papers if paper.candidate}
 
 
 def _say(made: PaperSet, target: Path, published: Published, as_json: bool) -> None:

@@ -41,7 +41,7 @@ QUANTITY = Quantity(
     needs=_needs,
     value=_value,
     line=_line,
-    points=(PointRule("M", "the electrons sorted into groups", "statement", 20),),
+    points=(PointRule("M", "the electrons sorted into groups", "statement", 20, follow_through=True),),
     ask="Sort the electrons of {species} into the groups that Slater's rules use.",
     rounding=Rounding(places=0),
     numeric=False,
