@@ -19,7 +19,7 @@ def counts_of_shares(shares: Iterable[Share]) -> Counts:
     found: Counter[Decimal] = Counter()
     for share in shares:
         if share.count and share.coefficient:
-            found[share.coefficient.normalize()] += share.count  # type: ignore[assignment]
+            found[share.coefficient.normalize()] += share.count
     return {coefficient: Decimal(count) for coefficient, count in found.items()}
 
 

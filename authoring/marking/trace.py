@@ -90,5 +90,3 @@ def _published(step: Target, practice: Practice, values: Mapping[Target, Value])
         return what.value(step, practice, tuple([values[need] for need in what.needs(step, practice)]))
     except (ContentError, KeyError):
         return None  # the practice has no such value from these inputs: the slip made one
-
-

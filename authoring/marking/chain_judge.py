@@ -1,0 +1,344 @@
+"""Stage 8, mark: a part answered by working: statements are held against the lines of the key, in order."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, field
+from decimal import Decimal
+
+from authoring.faults import ContentError
+from authoring.marking.explaining import Explained, Terms, explained
+from authoring.marking.forms import Written
+from authoring.marking.judgement import Own
+from authoring.marking.tallies import same_tally
+from authoring.marking.trace import frontier, traced
+from authoring.shielding.quantity import Target, Value, quantities, quantity
+from authoring.shielding.screening import Group
+from authoring.shielding.solve import Step, evaluate
+from authoring.tasks.solved import Solved
+from authoring.working.numbers import Rounding
+
+# What a candidate's label can stand for, by quantity.
+LABELS = {
+    "S": {"screening constant"},
+    "Zeff": {"effective nuclear charge", "valence-count charge", "SCF charge"},
+    "E": {"orbital energy", "total energy", "Moseley Kα energy", "ionization energy"},
+    "IE": {"ionization energy", "measured ionization energy"},
+    "r": {
+        "radius of maximum density",
+        "ionic radius by screening split",
+        "measured ionic radius",
+        "measured atomic radius",
+    },
+    "χ": {"Allred-Rochow electronegativity"},
+    "μ": {"spin-only magnetic moment"},
+}
+
+
+@dataclass(slots=True)
+class LineState:
+    """What was found for one line of the key."""
+
+    finding: str = "unseen"
+    stated: bool = False
+    follows: bool = False  # right on the candidate's own, wrong, earlier values
+    spoiled: bool = False
+    slips: tuple[str, ...] = ()
+    rivals: tuple[str, ...] = ()
+    words: str = ""
+    sure: bool = True
+
+
+@dataclass(slots=True)
+class Working:
+    """The lines of a part with what was found for each, and the candidate's own values."""
+
+    solved: Solved
+    states: list[LineState]
+    own: Own
+    remarks: list[str] = field(default_factory=list)
+
+
+def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Terms) -> Working:
+    """Hold every statement of a script's part against the lines of its key."""
+    working = Working(solved, [LineState() for _ in solved.steps], own)
+    for written in lines:
+        for statement in (*written.earlier, written):
+            if statement.remark:
+                working.remarks.append(f"{statement.text[:60]}: {statement.remark}")
+            _hold(working, statement, terms)
+    return working
+
+
+def statements_of(written: Written) -> list[Written]:
+    """A line as statements of one kind each: a comparison states the values that it compares, then its choice."""
+    if written.kind != "ordering":
+        return [written]
+    found = [
+        Written(
+            written.text,
+            "chain",
+            written.label,
+            name,
+            members=(member,),
+            value=member.value,
+            shown=member.shown,
+            unit=member.unit,
+        )
+        for name, member in zip(written.order, written.members, strict=False)
+        if member.value is not None
+    ]
+    if written.electron is not None:
+        found.append(Written(written.text, "electron", electron=written.electron))
+    return found
+
+
+def _hold(working: Working, written: Written, terms: Terms) -> None:
+    """Find the line that a statement is about, and note what it is."""
+    if written.kind == "chain":
+        _hold_number(working, written, terms)
+    elif written.kind in ("configuration", "groups", "tally", "electron"):
+        _hold_statement(working, written, terms)
+
+
+# --- configurations, groups, tallies -------------------------------------------------------------------
+
+
+def _hold_statement(working: Working, written: Written, terms: Terms) -> None:
+    value = {
+        "configuration": written.config,
+        "groups": written.groups,
+        "tally": written.terms,
+        "electron": written.electron,
+    }[written.kind]
+    names: set[str] = {written.kind} if written.kind != "electron" else {"first electron lost"}
+    found: list[tuple[int, Explained]] = []
+    for at in _open_lines(working, names, written):
+        step = working.solved.steps[at]
+        found.append((at, _explain_statement(step.target, value, working.own.values, terms)))
+    if found:
+        at, best = min(found, key=lambda pair: (pair[1].rank, working.states[pair[0]].stated, pair[0]))
+        _note(working, at, best, terms)
+
+
+def _explain_statement(target: Target, value: object, own: dict[Target, Value], terms: Terms) -> Explained:
+    own = {each: had for each, had in own.items() if each != target}
+    known = frontier(target, terms.practice, own)
+    right = evaluate(target, terms.practice, dict(known))
+    if _same(right, value):
+        return Explained("right", right, traced(target, terms.practice, known, ()))
+    if _same(evaluate(target, terms.practice), value):
+        return Explained(
+            "key", evaluate(target, terms.practice), words="agrees with the key, though not with the line before"
+        )
+    several = [slip for slip in terms.slips.touching(target)]
+    hits = []
+    for slip in sorted(several, key=lambda each: -each.likelihood):
+        try:
+            trace = traced(target, terms.practice, known, (slip,))
+        except ContentError:
+            continue
+        if _same(trace[-1].value, value):
+            hits.append((slip, trace))
+    if hits:
+        slip, trace = hits[0]
+        rivals = tuple((other,) for other, _ in hits[1:])
+        return Explained("slip", trace[-1].value, trace, (slip,), rivals, slip.did, sure=not rivals)
+    kept = value if target.quantity in ("configuration", "first electron lost") else None
+    return Explained("open", kept, words="no practice or slip in the catalogue explains this", sure=False)
+
+
+def _same(right: object, value: object) -> bool:
+    """Whether a statement says what the key says: groups as sets of members, tallies by their counts."""
+    if isinstance(right, tuple) and isinstance(value, tuple):
+        if right and hasattr(right[0], "coefficient"):
+            return same_tally(value, right)
+        return _grouping(right) == _grouping(value)
+    return type(right) is type(value) and right == value
+
+
+def _grouping(groups: tuple[object, ...]) -> frozenset[tuple[frozenset[tuple[int, int]], int]]:
+    """Groups without their order and without empty members: (4s,4p)2 and (4s)2 say the same."""
+    return frozenset((_members(group), group.electrons) for group in groups if isinstance(group, Group))
+
+
+def _members(group: Group) -> frozenset[tuple[int, int]]:
+    """The shell and l of a group's subshells, with s standing for s and p."""
+    return frozenset((each.n, 0 if each.l < 2 else each.l) for each in group.subshells)
+
+
+# --- numbers ---------------------------------------------------------------------------------------
+
+
+def _hold_number(working: Working, written: Written, terms: Terms) -> None:
+    candidates = list(_open_lines(working, _names_for(written), written))
+    candidates = [at for at in candidates if quantity(working.solved.steps[at].target.quantity).numeric]
+    found: list[tuple[int, Explained]] = []
+    for at in candidates:
+        step = working.solved.steps[at]
+        own = _with_subtrahend(working, step, written, terms)
+        found.append(
+            (
+                at,
+                explained(
+                    step.target, written, own, step.line.value, _rounding(working.solved, at), step.line.unit, terms
+                ),
+            )
+        )
+    if not found:
+        return
+    at, best = min(found, key=lambda pair: (pair[1].rank, _place(working, pair[0])))
+    if best.finding == "open" and written.label is None and not _final_bare(working, written):
+        working.remarks.append(f"{written.text[:60]}: a side calculation, not judged")
+        return
+    if best.finding == "open":
+        at = candidates[-1]
+        best = dict(found)[at]
+    _note_subtrahend(working, at, written, terms)
+    _note(working, at, best, terms)
+
+
+def _names_for(written: Written) -> set[str]:
+    if written.label in LABELS:
+        return LABELS[written.label]
+    if written.label is not None:
+        return set()
+    return set(quantities())
+
+
+def _final_bare(working: Working, written: Written) -> bool:
+    """Whether an unlabelled value can be the part's answer: nothing is stated for the last line yet."""
+    return not working.states[-1].stated or len(working.states) == 1
+
+
+def _place(working: Working, at: int) -> tuple[bool, int]:
+    """Among lines that a statement fits equally: one not stated yet, the last of them."""
+    return (working.states[at].stated, -at)
+
+
+def _rounding(solved: Solved, at: int) -> Rounding | None:
+    if at == len(solved.steps) - 1 and solved.answer.kind == "number":
+        places = len(solved.answer.shown.partition(".")[2])
+        return Rounding(places=places) if quantity(solved.quantity).rounding.places is not None else None
+    return None
+
+
+def _subtraction(step: Step, written: Written) -> tuple[Decimal, Decimal] | None:
+    """The (Z, S) of `23 − 19.70`, where the line is an effective nuclear charge and shows them."""
+    if step.target.quantity != "effective nuclear charge":
+        return None
+    for member in written.members:
+        if len(member.terms) == 2 and member.terms[0].product > 0 > member.terms[1].product:
+            return member.terms[0].product, -member.terms[1].product
+    return None
+
+
+def _with_subtrahend(working: Working, step: Step, written: Written, terms: Terms) -> dict[Target, Value]:
+    """The candidate's values, with the S that the line itself shows where none was stated before."""
+    pair = _subtraction(step, written)
+    need = step.target.to("screening constant")
+    if pair is None or need in working.own.values:
+        return working.own.values
+    exact = _screening_meant(need, pair[1], working, terms)
+    return {**working.own.values, need: exact}
+
+
+def _screening_meant(need: Target, shown: Decimal, working: Working, terms: Terms) -> Decimal:
+    right = evaluate(need, terms.practice, working.own.values)
+    return right if isinstance(right, Decimal) and right == shown else shown
+
+
+def _note_subtrahend(working: Working, at: int, written: Written, terms: Terms) -> None:
+    """Take `23 − 19.70` as a statement of S = 19.70 as well, where S is a line that is not stated yet."""
+    pair = _subtraction(working.solved.steps[at], written)
+    need = working.solved.steps[at].target.to("screening constant")
+    if pair is None or need in working.own.values:
+        return
+    line = next((index for index, step in enumerate(working.solved.steps) if step.target == need), None)
+    value = pair[1]
+    bare = Written(str(value), "chain", label="S", value=value, shown=str(value))
+    known = {each: had for each, had in working.own.values.items() if each != need}
+    key = evaluate(need, terms.practice)
+    found = explained(need, bare, known, key, None, "", terms)
+    if line is not None:
+        _note(working, line, found, terms)
+    else:
+        working.own.set(need, found.value, found.value != key)
+
+
+# --- noting what was found -----------------------------------------------------------------------------
+
+
+def _open_lines(working: Working, names: set[str], written: Written) -> Iterator[int]:
+    """The lines of the key that a statement could be about, by quantity and by what the statement names."""
+    for at, step in enumerate(working.solved.steps):
+        target = step.target
+        if target.quantity in names and target.quantity in quantities() and _is_about(target, written.about):
+            yield at
+
+
+def _is_about(target: Target, about: str) -> bool:
+    if not about:
+        return True
+    words = about.replace(",", " ").split()
+    labels = {target.species.label, target.species.symbol if not target.species.charge else target.species.label}
+    if target.electron is not None:
+        labels.add(target.electron.label)
+    return all(word in labels for word in words) or not any(_names_a_thing(word) for word in words)
+
+
+def _names_a_thing(word: str) -> bool:
+    return word[:1].isupper() or (len(word) == 2 and word[0].isdigit())
+
+
+def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
+    """Enter a finding for a line, and for the lines before it that it took along."""
+    own = working.own
+    had = set(own.values)
+    places = {step.target: index for index, step in enumerate(working.solved.steps)}
+    slips = tuple(slip.name for slip in found.slips)
+    rivals = tuple(" + ".join(slip.name for slip in each) for each in found.rivals)
+    target = working.solved.steps[at].target
+    for each in found.trace[:-1]:
+        index = places.get(each.target)
+        if index is None or working.states[index].stated:
+            continue
+        finding = "slip" if each.spoiled else "right"
+        working.states[index] = LineState(
+            finding,
+            False,
+            _follows(each.target, own, terms),
+            each.spoiled,
+            slips if each.spoiled else (),
+            rivals if each.spoiled else (),
+            found.words if each.spoiled else "",
+            found.sure or not each.spoiled,
+        )
+        own.set(each.target, each.value, each.value != evaluate(each.target, terms.practice))
+    before = any(each.spoiled for each in found.trace[:-1] if each.target not in places and each.target not in had)
+    spoiled = found.finding == "slip" and bool(found.trace) and (found.trace[-1].spoiled or before)
+    state = LineState(
+        found.finding,
+        True,
+        _follows(target, own, terms),
+        spoiled,
+        slips if spoiled or not found.trace else (),
+        rivals if spoiled else (),
+        found.words,
+        found.sure,
+    )
+    if found.finding == "slip" and not spoiled:
+        state.finding, state.words = "right", ""
+    working.states[at] = state
+    if found.value is not None:
+        key = working.solved.steps[at].line.value
+        own.set(target, found.value, not _as_key(found, key))
+
+
+def _as_key(found: Explained, key: Value) -> bool:
+    return found.finding == "key" or found.value == key
+
+
+def _follows(target: Target, own: Own, terms: Terms) -> bool:
+    """Whether the inputs of a line are the candidate's own and not the key's."""
+    return any(need in own.off for need, _ in frontier(target, terms.practice, own.values))

@@ -1,0 +1,261 @@
+"""Stage 8, mark: one statement for one line of the key: right, right but for a slip, wrong arithmetic, or open.
+
+Only the candidate's own earlier values are needed: under the practice they give what the line should be, under a
+practice with slips what a misunderstanding makes of it.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from decimal import Decimal
+from functools import lru_cache
+from typing import Literal
+
+from authoring.faults import ContentError
+from authoring.marking.forms import Member, Written
+from authoring.marking.tallies import looks_like_tally, same_tally
+from authoring.marking.trace import Known, Traced, frontier, traced
+from authoring.marking.units import in_key_unit
+from authoring.shielding.practice import Practice
+from authoring.shielding.quantity import Target, Value, quantity
+from authoring.shielding.solve import evaluate
+from authoring.slips.arithmetic import plain_arithmetic
+from authoring.slips.catalogue import Slip, Slips
+from authoring.slips.diagnose import agrees, explain
+from authoring.working.numbers import Rounding
+
+Finding = Literal["right", "key", "early", "slip", "arithmetic", "coarse", "unit", "open"]
+# From best to worst; a statement is taken to be about the line that it fits best.
+RANK: dict[Finding, int] = {
+    "right": 0, "key": 1, "early": 2, "slip": 3, "unit": 4, "arithmetic": 5, "coarse": 6, "open": 9,
+}  # fmt: skip
+
+# Values worked on with intermediates of three figures stay within this of the exact one.
+EARLY = Decimal("0.005")
+UNEXPLAINED = "no practice or slip in the catalogue explains this value"
+# With this many figures a value says enough to be told from its neighbours (common practice, no source).
+FEWEST_FIGURES = 3
+
+
+@dataclass(frozen=True, slots=True)
+class Explained:
+    """What a statement is, for one target.
+
+    `trace` holds the lines on the way that the statement does not show, the target last; `value` what the candidate
+    goes on with; `rivals` other slips that give the same; `words` the reason for the marker.
+    """
+
+    finding: Finding
+    value: Value
+    trace: tuple[Traced, ...] = ()
+    slips: tuple[Slip, ...] = ()
+    rivals: tuple[tuple[Slip, ...], ...] = ()
+    words: str = ""
+    sure: bool = True
+
+    @property
+    def rank(self) -> tuple[int, int]:
+        """Best first: the finding, then how many slips it takes."""
+        return (RANK[self.finding], len(self.slips))
+
+
+@dataclass(frozen=True, slots=True)
+class Terms:
+    """What a part is judged under."""
+
+    practice: Practice
+    slips: Slips
+
+
+def explained(
+    target: Target,
+    written: Written,
+    own: dict[Target, Value],
+    key: Value,
+    rounding: Rounding | None,
+    unit: str,
+    terms: Terms,
+) -> Explained:
+    """A statement of a number, for one numeric target. `key` is the key's value, `unit` the key's unit."""
+    value = written.value
+    if value is None:
+        return Explained("open", None, words="no value is stated")
+    value, trouble = in_key_unit(value, written.unit, unit)
+    intended = _intended(written, value)
+    own = {each: had for each, had in own.items() if each != target}
+    known = frontier(target, terms.practice, own)
+    found = _by_terms(target, written, known, terms) or _of_value(target, intended, known, key, rounding, terms)
+    if found.finding in ("right", "early") and trouble:
+        return Explained("unit", value, found.trace, words=trouble)
+    if intended != value and not _rounds_to(intended, value):
+        words = f"the arithmetic: the line comes to {_short(intended)}, not {_short(value)}"
+        if found.finding in ("right", "key", "early"):
+            return Explained("arithmetic", value, found.trace, words=words)
+        return Explained(found.finding, value, found.trace, found.slips, found.rivals, f"{found.words}; {words}", False)
+    return Explained(
+        found.finding,
+        _kept(found, value, known, target),
+        found.trace,
+        found.slips,
+        found.rivals,
+        found.words,
+        found.sure,
+    )
+
+
+def _kept(found: Explained, value: Decimal, known: Known, target: Target) -> Value:
+    """The exact value where the statement rounds it; the candidate's own figures otherwise."""
+    if found.finding in ("right", "slip") and found.trace:
+        exact = found.trace[-1].value
+        if isinstance(exact, Decimal) and _rounds_to(exact, value):
+            return exact
+    return value
+
+
+def _intended(written: Written, value: Decimal) -> Decimal:
+    """What the first worked member of a chain comes to: what the candidate meant before adding up."""
+    for member in written.members:
+        if member.value is not None and not member.shown and written.unit == (member.unit or written.unit):
+            return member.value
+    return value
+
+
+def _rounds_to(exact: Decimal, value: Decimal) -> bool:
+    """Whether a value is the exact one at the precision it is given with, one unit in the last place allowed."""
+    exponent = value.as_tuple().exponent
+    if not isinstance(exponent, int) or abs(exact.adjusted() - value.adjusted()) > 3:
+        return exact == value
+    return abs(exact - value) <= Decimal(1).scaleb(exponent)
+
+
+def _by_terms(target: Target, written: Written, known: Known, terms: Terms) -> Explained | None:
+    """A screening constant by its terms: they show the tally, which says more than the sum."""
+    if target.quantity != "screening constant" or any(each.quantity == "tally" for each, _ in known):
+        return None
+    shown = tally_shown(written)
+    if shown is None:
+        return None
+    for slips in tallying(target, terms):
+        try:
+            trace = traced(target, terms.practice, known, slips)
+        except ContentError:
+            continue
+        tally = next((each for each in trace if each.target.quantity == "tally"), None)
+        if tally is not None and same_tally(shown.terms, tally.value):
+            rivals = _same_terms(target, slips, shown, known, terms) if slips else ()
+            if not slips:
+                return Explained("right", trace[-1].value, trace)
+            return Explained("slip", trace[-1].value, trace, slips, rivals, slips[0].did, sure=not rivals)
+    return None
+
+
+def tally_shown(written: Written) -> Member | None:
+    """The member of a chain that is a sum of counts times coefficients."""
+    for member in written.members:
+        if looks_like_tally(member.terms):
+            return member
+    return None
+
+
+@lru_cache(maxsize=8192)
+def tallying(target: Target, terms: Terms) -> tuple[tuple[Slip, ...], ...]:
+    """No slip, then single slips that can touch the tally, likeliest first."""
+    touching = terms.slips.touching(target.to("tally"))
+    return ((), *((slip,) for slip in sorted(touching, key=lambda slip: -slip.likelihood)))
+
+
+def _same_terms(
+    target: Target, slips: tuple[Slip, ...], shown: Member, known: Known, terms: Terms
+) -> tuple[tuple[Slip, ...], ...]:
+    found = []
+    for other in tallying(target, terms):
+        if not other or other == slips:
+            continue
+        try:
+            trace = traced(target, terms.practice, known, other)
+        except ContentError:
+            continue
+        tally = next((each for each in trace if each.target.quantity == "tally"), None)
+        if tally is not None and same_tally(shown.terms, tally.value):
+            found.append(other)
+    return tuple(found)
+
+
+def _of_value(
+    target: Target, value: Decimal, known: Known, key: Value, rounding: Rounding | None, terms: Terms
+) -> Explained:
+    """A value on its own: the practice, the key, slips, pairs of slips, plain arithmetic; else open."""
+    try:
+        right = evaluate(target, terms.practice, dict(known))
+    except ContentError as error:
+        right = None
+        words = error.message
+    else:
+        words = ""
+    if right is not None and agrees(right, value, target, rounding):
+        coarse = isinstance(right, Decimal) and _coarse(right, value, rounding)
+        trace = traced(target, terms.practice, known, ())
+        if coarse:
+            return Explained("coarse", value, trace, words="given to too few figures", sure=False)
+        return Explained("right", right, trace)
+    if isinstance(key, Decimal) and agrees(key, value, target, rounding) and not _coarse(key, value, rounding):
+        return Explained("key", key, words="agrees with the key, though not with the line before")
+    found = _by_slips(target, value, known, rounding, terms)
+    early = isinstance(right, Decimal) and _early(right, value, target)
+    if early and not (found and found.sure):
+        return Explained("early", value, traced(target, terms.practice, known, ()), words="rounded early; accepted")
+    if found is not None:
+        return found
+    slipped = plain_arithmetic(target, value, terms.practice, dict(known), rounding)
+    if slipped:
+        rivals = "; or ".join(each.words for each in slipped[:3])
+        return Explained("arithmetic", value, (), words=rivals, sure=len(slipped) == 1)
+    return Explained("open", value, words=words or UNEXPLAINED, sure=False)
+
+
+def _by_slips(
+    target: Target, value: Decimal, known: Known, rounding: Rounding | None, terms: Terms
+) -> Explained | None:
+    for most in (1, 2):
+        several = explain(
+            target, value, practice=terms.practice, known=dict(known), rounding=rounding, slips=terms.slips, most=most
+        )
+        if not several:
+            continue
+        first = several[0]
+        rivals = tuple(each.slips for each in several[1:] if len(each.slips) == len(first.slips))
+        by_pen = plain_arithmetic(target, value, terms.practice, dict(known), rounding)
+        trace = traced(target, terms.practice, known, first.slips)
+        # A miscount that a slip explains is the slip: nobody could tell them apart, and the slip says more.
+        by_pen = tuple(each for each in by_pen if each.kind != "miscount")
+        sure = len(first.slips) == 1 and not rivals and not by_pen
+        words = " ".join(slip.did for slip in first.slips)
+        if by_pen:
+            words += f" (or {by_pen[0].words})"
+        return Explained("slip", first.answer, trace, first.slips, rivals, words, sure)
+    return None
+
+
+def _coarse(exact: Decimal, value: Decimal, rounding: Rounding | None) -> bool:
+    """Whether a value is right only because it is given so roughly."""
+    if exact == value:
+        return False
+    figures = len(value.as_tuple().digits)
+    wanted = min(FEWEST_FIGURES, (rounding.figures or FEWEST_FIGURES) if rounding else FEWEST_FIGURES)
+    exponent = value.as_tuple().exponent
+    if rounding is not None and rounding.places is not None and isinstance(exponent, int) and -exponent >= 1:
+        # One decimal fewer than the key's says as much where the key ends in 0 or 5.
+        return -exponent < rounding.places - 1
+    return figures < wanted
+
+
+def _early(right: Decimal, value: Decimal, target: Target) -> bool:
+    """Whether a value is the right one worked on with rounded intermediates."""
+    if quantity(target.quantity).rounding.places == 2 and not quantity(target.quantity).unit:
+        return False  # S and Z_eff are exact: nothing is rounded on the way to them
+    return bool(right) and abs(value - right) <= abs(right) * EARLY
+
+
+def _short(value: Decimal) -> str:
+    text = format(value.normalize() if value else value, "f")
+    return text if len(text) <= 10 else format(round(float(value), 4), "g")

@@ -1,0 +1,238 @@
+"""Stage 8, mark: one part of one script becomes a judgement; parts of a paper in order, on the candidate's own values.
+
+Nothing is guessed in silence: what no practice, slip or arithmetic explains is *unexplained* and left to a person.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Sequence
+from dataclasses import replace
+
+from authoring.marking.awarding import Chosen, awarded
+from authoring.marking.chain_judge import LineState, Working, read_working, statements_of
+from authoring.marking.choice_judge import chosen
+from authoring.marking.explaining import Terms, explained
+from authoring.marking.forms import DecimalMark, Written
+from authoring.marking.judgement import Certainty, Judgement, Own, PointJudged, least
+from authoring.marking.written import read_line
+from authoring.shielding.quantity import quantities
+from authoring.slips.diagnose import agrees
+from authoring.tasks.complete import roman
+from authoring.tasks.solved import Answer, Solved
+from authoring.working.numbers import Rounding
+
+_LINE_NUMBER = re.compile(
+    r"^\W*(?:first wrong line|wrong line|line|zeile|l\.?)?\s*[:(]?\s*(\d{1,2})\b[):.;,\s-]*", re.IGNORECASE
+)
+_BLANK_LABEL = re.compile(r"^\s*\(?([ivxl]{1,6})[).:]+\s*", re.IGNORECASE)
+
+Texts = tuple[str, ...]
+
+
+class Policy:
+    """How a plan wants scripts judged: what bare values earn, and the decimal mark."""
+
+    __slots__ = ("bare_values", "decimal")
+
+    def __init__(self, bare_values: str = "full marks", decimal: DecimalMark = "auto") -> None:
+        self.bare_values = bare_values
+        self.decimal = decimal
+
+
+def judged(label: str, solved: Solved, texts: Texts, own: Own, terms: Terms, policy: Policy) -> Judgement:
+    """Judge one part. `own` takes up what the candidate states; parts after it are judged on that."""
+    lines = [read_line(text, policy.decimal) for text in texts]
+    lines = [written for written in lines if written.kind != "blank"]
+    remarks = tuple(f"crossed out: {piece}" for written in lines for piece in written.struck)
+    if not lines:
+        return _all(label, solved, 0, "not answered", remarks)
+    if any(written.kind == "ok" for written in lines):
+        _take_key(solved, own)
+        return _all(label, solved, 1, "exactly as the key", remarks)
+    if solved.task == "explain":
+        return _explained_in_words(label, solved, remarks)
+    if solved.answer.kind == "table":
+        return _table(label, solved, lines, own, terms, policy, remarks)
+    if solved.answer.kind == "correction":
+        return _correction(label, solved, lines, own, terms, policy, remarks)
+    return _worked(label, solved, lines, own, terms, policy, remarks)
+
+
+def _all(label: str, solved: Solved, marks: int, reason: str, remarks: tuple[str, ...]) -> Judgement:
+    points = tuple(PointJudged(point.code, marks, reason) for point in solved.points)
+    return Judgement(label, points, "certain", remarks=remarks)
+
+
+def _take_key(solved: Solved, own: Own) -> None:
+    for step in solved.steps:
+        if step.target.quantity in quantities():
+            own.set(step.target, step.line.value, False)
+
+
+def _explained_in_words(label: str, solved: Solved, remarks: tuple[str, ...]) -> Judgement:
+    points = tuple(PointJudged(point.code, 0, f"a person decides: {point.what}", open=True) for point in solved.points)
+    return Judgement(label, points, "unexplained", remarks=remarks)
+
+
+def _worked(
+    label: str, solved: Solved, lines: list[Written], own: Own, terms: Terms, policy: Policy, remarks: tuple[str, ...]
+) -> Judgement:
+    """Working and, where the part asks for one, a choice at its end."""
+    working = read_working(solved, [each for written in lines for each in statements_of(written)], own, terms)
+    choice = _choice(solved, working, lines)
+    any_words = any(written.words for written in lines)
+    points, certainty = awarded(working, choice, policy.bare_values, any_words)
+    return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+
+
+def _choice(solved: Solved, working: Working, lines: Sequence[Written]) -> Chosen | None:
+    """What was chosen; None where the part asks for no choice."""
+    if not any(point.aspect in ("choice", "reason") for point in solved.points) and solved.answer.accepted is None:
+        return None
+    found = chosen(solved, lines)
+    last = working.states[-1] if working.states else LineState()
+    if found.reason is None and last.stated and last.spoiled:
+        return replace(found, slips=found.slips or last.slips, rivals=found.rivals or last.rivals)
+    if found.reason and any(state.stated and state.finding in ("open", "slip") for state in working.states):
+        return replace(found, reason=None if any(state.finding == "open" for state in working.states) else True)
+    return found
+
+
+def _judgement(
+    label: str,
+    states: Sequence[LineState],
+    choice: Chosen | None,
+    points: tuple[PointJudged, ...],
+    certainty: Certainty,
+    remarks: tuple[str, ...],
+) -> Judgement:
+    named: dict[str, None] = {}
+    rivals: dict[str, None] = {}
+    for state in states:
+        named.update(dict.fromkeys(state.slips))
+        rivals.update(dict.fromkeys(state.rivals))
+    if choice is not None:
+        named.update(dict.fromkeys(choice.slips))
+        rivals.update(dict.fromkeys(choice.rivals))
+    return Judgement(label, points, certainty, tuple(named), tuple(rivals), tuple(dict.fromkeys(remarks)))
+
+
+# --- tables -------------------------------------------------------------------------------------------
+
+
+def _table(
+    label: str, solved: Solved, lines: list[Written], own: Own, terms: Terms, policy: Policy, remarks: tuple[str, ...]
+) -> Judgement:
+    """Blanks in reading order, or by their labels (i), (ii) …; each on the candidate's own values."""
+    answers: tuple[Answer, ...] = solved.answer.value  # type: ignore[assignment]
+    written = _by_blank(lines, len(answers), policy)
+    points: list[PointJudged] = []
+    slips: dict[str, None] = {}
+    rivals: dict[str, None] = {}
+    found: list[Certainty] = []
+    for at, point in enumerate(solved.points):
+        line = written.get(at)
+        if line is None:
+            points.append(PointJudged(point.code, 0, "not answered"))
+            continue
+        judged_point, state = _blank(solved, at, line, own, terms)
+        points.append(judged_point)
+        slips.update(dict.fromkeys(state.slips))
+        rivals.update(dict.fromkeys(state.rivals))
+        found.append("unexplained" if judged_point.open else "certain" if state.sure else "ambiguous")
+    return Judgement(label, tuple(points), least(found), tuple(slips), tuple(rivals), remarks)
+
+
+def _by_blank(lines: Sequence[Written], count: int, policy: Policy) -> dict[int, Written]:
+    places = {roman(number): number - 1 for number in range(1, count + 1)}
+    found: dict[int, Written] = {}
+    pieces = [piece.strip() for written in lines for piece in written.text.split(";") if piece.strip()]
+    for at, piece in enumerate(pieces):
+        match = _BLANK_LABEL.match(piece)
+        place = places.get(match[1].lower()) if match else None
+        text = piece[match.end() :] if match and place is not None else piece
+        found[at if place is None else place] = read_line(text, policy.decimal)
+    return found
+
+
+def _blank(solved: Solved, at: int, line: Written, own: Own, terms: Terms) -> tuple[PointJudged, LineState]:
+    answers: tuple[Answer, ...] = solved.answer.value  # type: ignore[assignment]
+    answer, target, code = answers[at], solved.targets[at], solved.points[at].code
+    if answer.kind != "number":
+        value = line.electron or line.config or line.groups or line.species
+        right = agrees(answer.value, value, target)
+        open_ = not right and value is None
+        return PointJudged(code, int(right), "right" if right else "wrong", open_), LineState(sure=not open_)
+    rounding = Rounding(places=len(answer.shown.partition(".")[2]))
+    one = replace(solved, steps=tuple(step for step in solved.steps if step.target == target))
+    if not one.steps:
+        key = answer.value
+        found = explained(target, line, own.values, key, rounding, answer.unit, terms)
+        off = found.value != key and found.finding != "key"
+        state = LineState(
+            found.finding,
+            True,
+            False,
+            found.finding == "slip",
+            tuple(slip.name for slip in found.slips),
+            tuple(" + ".join(slip.name for slip in each) for each in found.rivals),
+            found.words,
+            found.sure,
+        )
+        if found.value is not None:
+            own.set(target, found.value, off)
+    else:
+        working = read_working(one, [replace(line, label=None, about="")], own, terms)
+        state = working.states[-1]
+    right = state.finding in ("right", "early", "key") and not state.spoiled
+    reason = state.words or ("right" if right else "wrong")
+    return PointJudged(code, int(right), reason, open=state.finding in ("open", "coarse")), state
+
+
+# --- corrections ----------------------------------------------------------------------------------------
+
+
+def _correction(
+    label: str, solved: Solved, lines: list[Written], own: Own, terms: Terms, policy: Policy, remarks: tuple[str, ...]
+) -> Judgement:
+    """The number of the first wrong line, then the working from there on put right."""
+    correction: tuple[int, object] = solved.answer.value  # type: ignore[assignment]
+    wanted = correction[0]
+    number, rest = _line_number(lines, policy)
+    working = read_working(solved, [each for written in rest for each in statements_of(written)], own, terms)
+    if number is None:
+        choice = Chosen(False, "no line is named", given=False, open=not working_shows(working))
+    else:
+        choice = Chosen(number == wanted, f"line {number} named; the first wrong line is {wanted}")
+    put_right = [state for state in working.states[1:] if state.stated and state.finding in ("right", "key", "early")]
+    choice = replace(choice, reason=True if put_right else None)
+    points, certainty = awarded(working, choice, policy.bare_values, any(each.kind == "words" for each in rest))
+    return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+
+
+def working_shows(working: Working) -> bool:
+    """Whether anything of the working was stated."""
+    return any(state.stated for state in working.states)
+
+
+def _line_number(lines: Sequence[Written], policy: Policy) -> tuple[int | None, list[Written]]:
+    """The line named, and what is left of the lines without it."""
+    number: int | None = None
+    rest: list[Written] = []
+    for written in lines:
+        for piece in _statements(written.text):
+            match = _LINE_NUMBER.match(piece) if number is None else None
+            named = match is not None and (match[0].strip(" :(;,.-)") != match[1] or not piece[match.end() :].strip())
+            if match is not None and named:
+                number = int(match[1])
+                piece = piece[match.end() :].strip(" ;:,.")
+            if piece.strip():
+                rest.append(read_line(piece.strip(), policy.decimal))
+    return number, [written for written in rest if written.kind != "blank"]
+
+
+def _statements(text: str) -> list[str]:
+    """A line cut at its first semicolon: `line 3; 19.70`."""
+    head, semicolon, tail = text.partition(";")
+    return [head, tail] if semicolon else [text]
