@@ -118,6 +118,7 @@ def _electrons(draw: ElectronDraw, species: Species, practice: Practice) -> tupl
     return tuple(each for each in choices if configuration.count(each))
 
 
+@lru_cache(maxsize=64)
 def _numbers(draw: NumberDraw) -> tuple[Decimal, ...]:
     if draw.numbers:
         return tuple(dict.fromkeys(draw.numbers))

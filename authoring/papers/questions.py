@@ -18,6 +18,7 @@ from authoring.papers.variants import Variant
 from authoring.papers.views import value_text, view
 from authoring.shielding.practice import Practice
 from authoring.slips.catalogue import Slips
+from authoring.specs.draws import rests_on
 from authoring.specs.item import Alternative, Item, Part, texts_in
 from authoring.specs.prose import ProseFault, read_prose
 from authoring.specs.template import Template
@@ -86,12 +87,16 @@ class Kept:
         self.parts: dict[tuple[object, ...], PartAsked] = {}
         self._names: dict[int, frozenset[str]] = {}
 
-    def names(self, part: Part) -> frozenset[str]:
-        """What a part may rest on: its texts as they are, their pieces between commas, and its templates' names."""
+    def names(self, part: Part, item: Item) -> frozenset[str]:
+        """The draws that a part may rest on: those that its texts or templates name, and what these rest on."""
         if id(part) not in self._names:
-            pieces = (piece.strip() for _, text in texts_in(part.raw) for piece in (text, *text.split(",")))
-            in_templates = (name for _, template in part.templates for name in template.names)
-            self._names[id(part)] = frozenset((*pieces, *in_templates))
+            pieces = {piece.strip() for _, text in texts_in(part.raw) for piece in (text, *text.split(","))}
+            pieces.update(name for _, template in part.templates for name in template.names)
+            # A draw rests on draws before it only, so one way back finds them all.
+            for name, draw in reversed(list(item.draws.items())):
+                if name in pieces:
+                    pieces.update(rests_on(draw))
+            self._names[id(part)] = frozenset(pieces & set(item.draws))
         return self._names[id(part)]
 
 
@@ -128,7 +133,8 @@ class _Maker:
 
     def question(self) -> Question:
         bindings, terms = self.variant.bindings, self.terms
-        pools = {name: pool(draw, bindings, terms.practice) for name, draw in self.item.draws.items()}
+        named = frozenset[str]().union(*(self.kept.names(part, self.item) for part in parts_of(self.item)))
+        pools = {name: pool(draw, bindings, terms.practice) for name, draw in self.item.draws.items() if name in named}
         setting = Setting(terms.practice, bindings, (), self.turn, terms.figures, terms.slips, pools)
         figure = self.item.figure
         return Question(
@@ -185,7 +191,7 @@ class _Maker:
             if asked is None:
                 break  # what follows would complain about what this part did not give
             made.append(asked)
-            self.names = self.names.union(*(self.kept.names(each) for each in _alternatives(part)))
+            self.names = self.names.union(*(self.kept.names(each, self.item) for each in _alternatives(part)))
             setting = replace(setting, earlier=(*setting.earlier, asked.solved))
         return tuple(made)
 
@@ -203,7 +209,7 @@ class _Maker:
 
     def part(self, part: Part, label: str, setting: Setting) -> PartAsked | None:
         """One part, solved: it rests on what it names and on what the parts before it name."""
-        names = self.names | self.kept.names(part)
+        names = self.names | self.kept.names(part, self.item)
         key = (id(part), label, self.turn, *(value for name, value in self.variant.values if name in names))
         if key in self.kept.parts:
             return self.kept.parts[key]
