@@ -105,8 +105,8 @@ draw:
   metal: {{block: d, period: 4, except: [Zn]}}
   tank: {{from: 1, to: 20}}
 story: |
-  A paper exercise: tank {{{{ tank }}}} of row {number} holds dissolved {{{{ metal.name }}}}. Its keeper wants to know how
-  strongly the nucleus holds the outer electrons of an atom of {{{{ metal.name }}}}.
+  A paper exercise: tank {{{{ tank }}}} of row {number} holds dissolved {{{{ metal.name }}}}. Its keeper wants to know
+  how strongly the nucleus holds the outer electrons of an atom of {{{{ metal.name }}}}.
 parts:
   - calculate: screening constant
     of: metal
