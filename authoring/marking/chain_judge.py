@@ -131,7 +131,7 @@ def _explain_statement(target: Target, value: object, own: dict[Target, Value], 
         return Explained(
             "key", evaluate(target, terms.practice), words="agrees with the key, though not with the line before"
         )
-    several = [slip for slip in terms.slips.touching(target)]
+    several = list(terms.slips.touching(target))
     hits = []
     for slip in sorted(several, key=lambda each: -each.likelihood):
         try:

@@ -109,7 +109,7 @@ class Pile:
             own = resolve_label(label, paper.labels)
             if own is None:
                 message = f"paper {paper.code} has no part {label!r}{suggestion(label, paper.labels)}"
-                self.faults.append(Fault("script-unknown-part", message, script.label_sources[label]()))
+                self.faults.append(Fault("script-unknown-part", message, script.label_places[label]()))
                 continue
             found[own] = tuple([line.text for line in lines])
         return found
