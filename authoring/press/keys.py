@@ -13,6 +13,7 @@ from authoring.papers.questions import PartAsked, Question
 from authoring.press.language import Words
 from authoring.press.medium import Medium, parted
 from authoring.press.sheets import ExhibitView, blank_label
+from authoring.shielding.quantity import Target
 from authoring.specs.prose import read_prose
 from authoring.tasks.explain import NOT
 from authoring.tasks.solved import Answer, BlankTable, Options, Solved
@@ -63,7 +64,7 @@ class KeyPart:
     lines: tuple[LineView, ...]
     exhibits: tuple[ExhibitView, ...]
     options: tuple[tuple[Markup, Markup, Markup], ...]
-    wrong: tuple[tuple[Markup, Markup], ...]
+    wrong: tuple[tuple[Markup, Markup, Markup], ...]
     rubric: tuple[tuple[Markup, Markup], ...]
     notes: tuple[Markup, ...]
     choices: tuple[KeyPart, ...]
@@ -184,12 +185,13 @@ class KeyMaker:
                     says = self.words("option_right") if right else self.medium.words(" + ".join(option.slips))
                     yield self.medium.text(f"({option.letter})"), self.medium.node(option.node), says
 
-    def wrong(self, solved: Solved) -> Iterator[tuple[Markup, Markup]]:
-        """The likeliest wrong answers and the slips that lead to them."""
+    def wrong(self, solved: Solved) -> Iterator[tuple[Markup, Markup, Markup]]:
+        """The likeliest wrong answers, the slips that lead to them, and what each earns with its working."""
         if any(isinstance(exhibit, Options) for exhibit in solved.exhibits):
             return
         for each in solved.wrong[:_MOST_WRONG]:
-            yield self.medium.number(each.shown), self.medium.words(" + ".join(each.slips))
+            worth = Markup() if each.marks is None else self.medium.text(f"[{each.marks}]")
+            yield self.medium.number(each.shown), self.medium.words(" + ".join(each.slips)), worth
 
     def accepted(self, solved: Solved) -> Markup:
         """Which values will do for a rounded number: what the task says, else one more or less in the last place."""
@@ -279,9 +281,14 @@ def _long(answer: Answer) -> bool:
 
 def _asks(solved: Solved) -> str:
     """`calculate screening constant: V 4s`, for the marker's eye."""
-    about = ", ".join(dict.fromkeys(target.about for target in solved.targets))
+    about = ", ".join(dict.fromkeys(_about(target) for target in solved.targets))
     words = f"{solved.task} {solved.quantity}".strip()
     return f"{words}: {about}" if about else words
+
+
+def _about(target: Target) -> str:
+    """`V²⁺ 3d`."""
+    return target.about.replace(target.species.label, target.species.printed, 1)
 
 
 def _filled(table: BlankTable, medium: Medium) -> ExhibitView:

@@ -136,9 +136,5 @@ class TargetFields(PartFields):
         default_factory=dict, alias="with", description="what else the quantity takes: stage, distance, …"
     )
     unit: Word | None = Field(None, description="the unit of the answer, where the quantity has several")
-    figures: Annotated[int, Between(1, 8)] | None = Field(
-        None, description="significant figures of the answer"
-    )
-    places: Annotated[int, Between(0, 6)] | None = Field(
-        None, description="decimal places of the answer"
-    )
+    figures: Annotated[int, Between(1, 8)] | None = Field(None, description="significant figures of the answer")
+    places: Annotated[int, Between(0, 6)] | None = Field(None, description="decimal places of the answer")

@@ -123,3 +123,21 @@ def numbered(candidates: Iterable[Candidate]) -> tuple[Point, ...]:
             Point(code, each.rule.kind, each.line, each.rule.what, each.rule.follow_through, each.rule.aspect)
         )
     return tuple(points)
+
+
+def charged(points: Sequence[Point], line: int) -> Point | None:
+    """The point that a mistake on a line without points costs: the accuracy point of the next line that has one."""
+    later = [point for point in points if point.line > line and point.aspect not in ("choice", "reason")]
+    following = [point for point in later if point.line == min(each.line for each in later)]
+    return next((point for point in following if point.aspect == "value"), following[0] if following else None)
+
+
+def marks_left(points: Sequence[Point], spoiled: Collection[int]) -> int:
+    """What working with these lines spoiled, and the rest right on its own values, still earns."""
+    pointed_lines = {point.line for point in points}
+    lost = {point.code for point in points if point.line in spoiled}
+    for line in spoiled:
+        hit = charged(points, line) if line not in pointed_lines else None
+        if hit is not None:
+            lost.add(hit.code)
+    return len(points) - len(lost)

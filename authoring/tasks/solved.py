@@ -45,10 +45,14 @@ class Answer:
 
 @dataclass(frozen=True, slots=True)
 class Wrong:
-    """An answer that a misunderstanding leads to: the slips' names and the answer as it would be written."""
+    """An answer that a misunderstanding leads to: the slips' names and the answer as it would be written.
+
+    `marks`: what it earns with its working, where that is settled.
+    """
 
     slips: tuple[str, ...]
     shown: str
+    marks: int | None = None
 
 
 # --- exhibits: what is printed with a question besides its wording ------------------------------------
