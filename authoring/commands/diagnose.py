@@ -17,9 +17,10 @@ from authoring.faults import UsageError
 from authoring.marking.written import read_line
 from authoring.papers.record import ascii_text
 from authoring.shielding.quantity import Target, quantity
-from authoring.shielding.solve import evaluate
+from authoring.shielding.solve import check_details, evaluate
 from authoring.slips.arithmetic import plain_arithmetic
 from authoring.slips.diagnose import explain, fits
+from authoring.tasks.setting import must_have
 from authoring.working.numbers import shown
 
 
@@ -59,6 +60,8 @@ def command(
             electron_word(electron) if "electron" in what.takes else None,
             details_from(details),
         )
+        check_details(target)
+        must_have(target, practice)
         right = evaluate(target, practice)
         if fits(right, number, target):
             found.append((what.name, "right", shown(right), (), "the right value"))

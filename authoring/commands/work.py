@@ -17,9 +17,10 @@ from authoring.faults import ContentError
 from authoring.papers.record import ascii_text
 from authoring.press.plain import working_text
 from authoring.shielding.quantity import Quantity, Target, quantity
-from authoring.shielding.solve import Step, work
+from authoring.shielding.solve import Step, check_details, work
 from authoring.tasks.apart import told_apart
 from authoring.tasks.points import pointed
+from authoring.tasks.setting import must_have
 from authoring.working.lines import Point
 from authoring.working.numbers import Rounding
 from authoring.working.text import to_text
@@ -52,10 +53,10 @@ def command(
     if electron is not None and "electron" not in what.takes:
         raise ContentError(f"{what.name} is not a quantity of an electron; leave {electron!r} out")
     target = Target(what.name, Species.parse(species), electron_word(electron), details_from(details))
-    for detail, _ in target.detail:
-        if detail not in what.details:
-            raise ContentError(f"{what.name} takes no {detail!r}", detail, what.details)
-    steps = work(target, practice_under(conventions), rounding=Rounding(figures=figures) if figures else None)
+    practice = practice_under(conventions)
+    check_details(target)
+    must_have(target, practice)
+    steps = work(target, practice, rounding=Rounding(figures=figures) if figures else None)
     points = pointed(steps, None)
     if as_json:
         print_json(working_data(target, what, steps, points))
