@@ -39,7 +39,7 @@ def working_text(
 
 
 def _code(point: Point) -> str:
-    return f"{point.code}ft" if point.follow_through else point.code
+    return f"{point.code} ft" if point.follow_through else point.code
 
 
 def _sides(line: Line, decimal: str) -> tuple[str, list[str]]:
