@@ -6,6 +6,7 @@ accepted is in the ledger before the next question is asked.
 
 from __future__ import annotations
 
+import textwrap
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 
@@ -18,11 +19,13 @@ from authoring.marking.recall import PaperToMark, RecalledSet
 from authoring.tasks.solved import Solved
 from authoring.working.text import to_text
 
+WIDTH = 79
 KEYS = """\
 Type the candidate's lines, one at a time; an empty line ends the part.
   ok     exactly as the key          later  leave this part for later
   key    show the key's working      stop   stop here; everything accepted is kept
-After the judgement: Enter accepts, a number gives other marks, `again` types the part anew.
+After the judgement: Enter accepts, a number gives other marks, `again` types
+the part anew.
 Proposed marks are for you to confirm; your institution's rules apply."""
 
 Ask = Callable[[str], str]
@@ -207,14 +210,20 @@ def answer_words(solved: Solved) -> str:
 
 def judgement_words(judgement: Judgement) -> str:
     """A judgement at the terminal: the marks, then each point with its reason, the decisive number last."""
-    lines = [f"    {point.code:<4}{point.awarded}  {point.reason}" for point in judgement.points]
+    lines = [_wrapped(f"    {point.code:<4}{point.awarded}  ", point.reason) for point in judgement.points]
     if judgement.slips:
         lines.append(f"    slip: {', '.join(judgement.slips)}")
     if judgement.rivals:
         lines.append(f"    or:   {', '.join(judgement.rivals)}")
-    lines += [f"    note: {remark}" for remark in judgement.remarks]
+    lines += [_wrapped("    note: ", remark) for remark in judgement.remarks]
     lines.append(f"    {judgement.certainty}: {judgement.awarded} of {judgement.out_of}")
     return "\n".join(lines)
+
+
+def _wrapped(head: str, text: str) -> str:
+    """A reason within the terminal's width, without the markup of item text."""
+    plain = text.replace("`", "")
+    return textwrap.fill(plain, WIDTH, initial_indent=head, subsequent_indent=" " * len(head), break_on_hyphens=False)
 
 
 def with_marks(judgement: Judgement, marks: int, reason: str) -> Judgement:
