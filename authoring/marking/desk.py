@@ -22,9 +22,9 @@ from authoring.working.text import to_text
 WIDTH = 79
 KEYS = """\
 Type the candidate's lines, one at a time; an empty line ends the part.
-  ok     exactly as the key          later  leave this part for later
-  key    show the key's working      stop   stop here; everything accepted is kept
-After the judgement: Enter accepts, a number gives other marks, `again` types
+  ok   exactly as the key         later  leave this part for later
+  key  show the key's working     stop   stop here; what was accepted is kept
+After the judgement: Enter accepts, a number gives other marks, `again` begins
 the part anew.
 Proposed marks are for you to confirm; your institution's rules apply."""
 

@@ -44,8 +44,10 @@ def located(word: str, kind: str, beside: Path | None = None) -> Path:
     names = shipped_names(kind)
     if word in names:
         return shipped_folder("scenarios") / kind / f"{word}.yaml"
+    beside_names = tuple(path.name for path in sorted(base.glob("*.yaml"))) if base.is_dir() else ()
     noun = kind.removesuffix("s")
+    hint = suggestion(word, (*beside_names, *names))
     article = "an" if noun[0] in "aeiou" else "a"
     raise UsageError(
-        f"no {noun} {word[:80]!r}: neither {article} {noun} file nor a shipped name{suggestion(word, names)}"
+        f"no {noun} {word[:80]!r}: neither {article} {noun} file nor a shipped name{hint}"
     )

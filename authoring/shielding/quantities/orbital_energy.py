@@ -119,7 +119,7 @@ QUANTITY = Quantity(
         PointRule("M", "Z_eff and n* put into −R(Z_eff/n*)²", "method", 40, follow_through=True),
         PointRule("A", "the energy with its sign and unit", "value", 105, follow_through=True),
     ),
-    ask="Calculate the energy, $E$, of {electron} of {species} in the field of that charge.",
+    ask="Use Slater's rules to calculate the energy, $E$, of {electron} of {species}.",
     rounding=Rounding(figures=4),
     takes=frozenset({"electron"}),
     details=("unit",),
