@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import json
 import os
+import re
 import shutil
 import statistics
 import subprocess
@@ -15,6 +16,7 @@ import sys
 import tempfile
 import time
 from collections.abc import Callable
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TextIO
@@ -132,7 +134,7 @@ print(resource.getrusage(resource.RUSAGE_CHILDREN).ru_maxrss)
 
 
 def set_papers() -> list[Row]:
-    """1,000 papers of 6 parts, against TeX alone on the same two files with as many runs each, two at a time."""
+    """1,000 papers of 6 parts, against TeX alone on the same two files, run as often as it asks for, both at once."""
     with tempfile.TemporaryDirectory() as name:
         folder = Path(name)
         write_plan(folder)
@@ -148,10 +150,8 @@ def set_papers() -> list[Row]:
         def theirs() -> float:
             begun = time.perf_counter()
             jobs = [tex_alone(made / f"{each}.tex", folder / each) for each in ("sheets", "key")]
-            for _ in range(2):
-                running = [subprocess.Popen(job, cwd=at, stdout=subprocess.DEVNULL) for job, at in jobs]
-                if any(each.wait() for each in running):
-                    sys.exit("TeX alone failed")
+            with ThreadPoolExecutor(2) as pool:
+                list(pool.map(typeset, jobs))
             return time.perf_counter() - begun
 
         found, one, other = ratio(3, ours, theirs)
@@ -160,13 +160,27 @@ def set_papers() -> list[Row]:
         megabytes = int(peak.stdout) / 1024
     return [
         Row(
-            f"set 1,000 papers: {one:.1f} s; TeX alone, 2 runs each: {other:.1f} s",
+            f"set 1,000 papers: {one:.1f} s; TeX alone: {other:.1f} s",
             f"{found:.2f} ×",
             "≤ 1.5 ×",
             found <= 1.5,
         ),
         Row("set 1,000 papers: peak memory of one process", f"{megabytes:.0f} MB", "< 1000 MB", megabytes < 1000),
     ]
+
+
+AGAIN = re.compile(rb"Rerun to get|Label\(s\) may have changed|Rerun LaTeX")
+
+
+def typeset(job: tuple[list[str], Path]) -> None:
+    """Run TeX on a file, and again while its log asks for it: as many runs as `set` has to make."""
+    command, folder = job
+    for _ in range(3):
+        done = subprocess.run(command, cwd=folder, stdout=subprocess.DEVNULL)
+        if done.returncode:
+            sys.exit("TeX alone failed")
+        if not AGAIN.search(next(folder.glob("*.log")).read_bytes()):
+            return
 
 
 def tex_alone(source: Path, folder: Path) -> tuple[list[str], Path]:
@@ -217,6 +231,19 @@ def vet() -> list[Row]:
     ]
 
 
+# The record of a set without its printing, which has a row of its own.
+RECORDING = """
+import sys
+from pathlib import Path
+from authoring.papers.assemble import assembled
+from authoring.papers.questions import Terms
+from authoring.papers.record import written
+from authoring.specs.plan import read_plan
+plan = read_plan(Path("plan.yaml"))
+made = assembled(plan, Terms(plan.practice, plan.slips), "benchmark", [None] * int(sys.argv[1]))
+Path("made").mkdir()
+Path("made", "set.json").write_text(written(made), encoding="utf-8")
+"""
 PARSING = "import sys, yaml; yaml.load(open(sys.argv[1], encoding='utf-8'), yaml.CSafeLoader)"
 
 
@@ -240,22 +267,7 @@ def mark() -> list[Row]:
     with tempfile.TemporaryDirectory() as name:
         folder = Path(name)
         write_plan(folder)
-        seconds(
-            [
-                *PROGRAM,
-                "set",
-                "plan.yaml",
-                "--copies",
-                "10000",
-                "--seed",
-                "b",
-                "--into",
-                "made",
-                "--time-limit",
-                "3600",
-            ],
-            folder,
-        )
+        seconds([sys.executable, "-c", RECORDING, "10000"], folder)
         papers = json.loads((folder / "made" / "set.json").read_text(encoding="utf-8"))["papers"]
         scripts = folder / "scripts.yaml"
         scripts.write_text(
