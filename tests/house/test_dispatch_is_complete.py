@@ -8,19 +8,22 @@ from pathlib import Path
 
 import pytest
 from commands_help import run
-from papers_help import TANK
+from papers_help import TANK, TERMS, plan
 
 import authoring
 from authoring.commands.guide_topics import TOPICS, topic
 from authoring.faults import Fault, FaultsFound
+from authoring.marking.pile import Pile
+from authoring.marking.recall import recalled
 from authoring.marking.scripts import read_scripts
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
+from authoring.papers.record import RECORD, written
 from authoring.papers.vet import vetted_item, vetted_plan
 from authoring.shielding.quantity import quantities
 from authoring.slips.catalogue import catalogue
 from authoring.specs.plan import read_plan
-from authoring.specs.roster import read_roster
+from authoring.specs.roster import Candidate, read_roster
 from authoring.tasks.task import tasks
 
 HOUSE = Path(authoring.__file__).parent
@@ -119,6 +122,11 @@ TRIGGERS: dict[str, tuple[str, str | bytes]] = {
     "script-entry": ("scripts.yaml", "- just words\n- paper: ABCDE\n"),
     "script-label": ("scripts.yaml", "- paper: ABCDE\n  answers: x\n"),
     "script-lines": ("scripts.yaml", "- paper: ABCDE\n  1a:\n    b: x\n"),
+    # CODE is the code of the only paper of a set of the tank, sat by s1.
+    "script-candidate": ("pile", "- paper: CODE\n  candidate: s2\n  1a: ok\n"),
+    "script-twice": ("pile", "- paper: CODE\n  1a: ok\n- paper: CODE\n  1a: 3.30\n"),
+    "script-unknown-paper": ("pile", "- paper: ZZZZZ\n  1a: ok\n"),
+    "script-unknown-part": ("pile", "- paper: CODE\n  9z: ok\n"),
     "script-paper": ("scripts.yaml", "- 1a: 3.30\n"),
     "scripts-list": ("scripts.yaml", "paper: ABCDE\n"),
     "scripts-none": ("scripts.yaml", ""),
@@ -147,6 +155,18 @@ TRIGGERS: dict[str, tuple[str, str | bytes]] = {
 }
 
 
+def pile_faults(folder: Path, text: str) -> tuple[Fault, ...]:
+    """What marking says of scripts that read well but do not fit their set."""
+    made = assembled(plan({"tank": TANK}), TERMS, "s", [Candidate("s1")])
+    (folder / RECORD).write_text(written(made), encoding="utf-8")
+    (folder / "scripts.yaml").write_text(text.replace("CODE", made.papers[0].code), encoding="utf-8")
+    read = read_scripts(folder / "scripts.yaml")
+    assert read.faults == ()
+    pile = Pile(recalled(folder))
+    list(pile.judged(read.scripts))
+    return tuple(pile.faults)
+
+
 def faults_of(folder: Path, kind: str, text: str | bytes) -> tuple[Fault, ...]:
     """What the reader of a kind of file says of a text."""
     path = folder / (kind if "." in kind else "tank.yaml" if kind == "item" else f"{kind}.yaml")
@@ -158,6 +178,8 @@ def faults_of(folder: Path, kind: str, text: str | bytes) -> tuple[Fault, ...]:
             path = folder / "plan.yaml"
             path.write_text(PLAN + "slips: slips.yaml\n", encoding="utf-8")
         return vetted_plan(path)[0].findings
+    if kind == "pile":
+        return pile_faults(folder, str(text))
     if kind == "roster":
         with pytest.raises(FaultsFound) as caught:
             read_roster(path)
@@ -180,9 +202,9 @@ def test_every_code_in_the_source_has_a_trigger():
 def test_faults_met_while_assembling_are_told_once_for_many_papers(tmp_path):
     (tmp_path / "tank.yaml").write_text(TANK.replace("dissolved", "`Xq`"), encoding="utf-8")
     (tmp_path / "plan.yaml").write_text(PLAN, encoding="utf-8")
-    plan = read_plan(tmp_path / "plan.yaml")
+    read = read_plan(tmp_path / "plan.yaml")
     with pytest.raises(FaultsFound) as caught:
-        assembled(plan, Terms(plan.practice, plan.slips), "s", [None] * 7)
+        assembled(read, Terms(read.practice, read.slips), "s", [None] * 7)
     assert [(fault.code, fault.message.endswith("; and 6 more variants")) for fault in caught.value.faults] == [
         ("text", True)
     ]
