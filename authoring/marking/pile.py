@@ -1,4 +1,4 @@
-"""Stage 8, mark: a pile of scripts against a set: codes and labels resolved, each part judged, each cause judged once."""
+"""Stage 8, mark: a pile of scripts against a set: codes and labels resolved, the same work judged once."""
 
 from __future__ import annotations
 

@@ -98,7 +98,7 @@ def test_working_is_aligned_and_carries_its_points() -> None:
         "S     = 1 × 0.35 + 11 × 0.85 + 10 × 1.00 = 0.35 + 9.35 + 10.00 = 19.70",
         "Z_eff = Z − S = 23 − 19.70 = 3.30",
     ]
-    assert [line[76:] for line in lines] == ["B1", "M1ft", "M2ft", "A1ft", "A2ft"]
+    assert [line[75:] for line in lines] == ["B1", "M1 ft", "M2 ft", "A1 ft", "A2 ft"]
 
 
 @pytest.mark.parametrize("width", [80, 60, 40])
