@@ -11,7 +11,7 @@ from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 
 from authoring.faults import UsageError, suggestion
-from authoring.marking.judge import judged
+from authoring.marking.judge import best_judged
 from authoring.marking.judgement import Judgement, Own, PointJudged
 from authoring.marking.ledger import Ledger
 from authoring.marking.ledger_mark import Mark
@@ -97,12 +97,12 @@ class Desk:
         self.say(f"paper {code}" + (f", candidate {paper.candidate}" if paper.candidate else ""))
         for question in paper.questions:
             own = Own()
-            for label, solved in question:
+            for label, alternatives in question:
                 if label in done:
-                    judged(label, solved, tuple(answers.get(label, ())), own, self.of.terms, self.of.policy)
+                    best_judged(label, alternatives, tuple(answers.get(label, ())), own, self.of.terms, self.of.policy)
                     continue
                 try:
-                    self.part(paper, label, solved, own, answers)
+                    self.part(paper, label, alternatives, own, answers)
                 except Later:
                     continue
 
@@ -111,14 +111,23 @@ class Desk:
         events = [event for event in self.ledger.scripts(paper=code) if event.marker == self.marker]
         return {label: list(lines) for label, lines in events[-1].content["answers"].items()} if events else {}
 
-    def part(self, paper: PaperToMark, label: str, solved: Solved, own: Own, answers: dict[str, list[str]]) -> None:
+    def part(
+        self,
+        paper: PaperToMark,
+        label: str,
+        alternatives: tuple[Solved, ...],
+        own: Own,
+        answers: dict[str, list[str]],
+    ) -> None:
         """One part: lines in, judgement out, accepted or changed, kept."""
+        solved = alternatives[0]
         while True:
             self.say("")
-            self.say(f"{label}  {headline(solved)}  [{solved.marks}]  key: {answer_words(solved)}")
+            for each in alternatives:
+                self.say(f"{label}  {headline(each)}  [{each.marks}]  key: {answer_words(each)}")
             lines = self.lines(label, solved)
             mine = own.copy()
-            judgement = judged(label, solved, tuple(lines), mine, self.of.terms, self.of.policy)
+            judgement = best_judged(label, alternatives, tuple(lines), mine, self.of.terms, self.of.policy)
             self.say(judgement_words(judgement))
             accepted = self.accept(solved, judgement)
             if accepted is None:

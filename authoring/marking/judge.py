@@ -59,6 +59,21 @@ def judged(label: str, solved: Solved, texts: Texts, own: Own, terms: Terms, pol
     return _worked(label, solved, lines, own, terms, policy, remarks)
 
 
+def best_judged(
+    label: str, alternatives: tuple[Solved, ...], texts: Texts, own: Own, terms: Terms, policy: Policy
+) -> Judgement:
+    """Judge a part of which the candidate answers one alternative: the one that the lines answer best counts."""
+    if len(alternatives) == 1:
+        return judged(label, alternatives[0], texts, own, terms, policy)
+    tried = []
+    for solved in alternatives:
+        mine = own.copy()
+        tried.append((judged(label, solved, texts, mine, terms, policy), mine))
+    judgement, mine = max(tried, key=lambda pair: pair[0].awarded)
+    own.update(mine.values, mine.off)
+    return judgement
+
+
 def _all(label: str, solved: Solved, marks: int, reason: str, remarks: tuple[str, ...]) -> Judgement:
     points = tuple(PointJudged(point.code, marks, reason) for point in solved.points)
     return Judgement(label, points, "certain", remarks=remarks)

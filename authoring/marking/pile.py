@@ -6,11 +6,10 @@ from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
 from authoring.faults import Fault, suggestion
-from authoring.marking.judge import judged
+from authoring.marking.judge import best_judged
 from authoring.marking.judgement import Judgement, Own
-from authoring.marking.recall import PaperToMark, RecalledSet
+from authoring.marking.recall import PaperToMark, QuestionToMark, RecalledSet
 from authoring.marking.scripts import Script, resolve_label
-from authoring.tasks.solved import Solved
 
 # Judgements remembered before the memory is let go: some 100 MB at the most.
 MOST_REMEMBERED = 100_000
@@ -49,22 +48,20 @@ class Judge:
             found += self._question(question, answers)
         return tuple(found)
 
-    def _question(
-        self, question: tuple[tuple[str, Solved], ...], answers: Mapping[str, tuple[str, ...]]
-    ) -> Iterator[Judgement]:
+    def _question(self, question: QuestionToMark, answers: Mapping[str, tuple[str, ...]]) -> Iterator[Judgement]:
         node = self._root(question)
-        for label, solved in question:
+        for label, alternatives in question:
             texts = answers.get(label, _UNANSWERED)
             hit = node.next.get(texts)
             if hit is None:
                 own = node.own.copy()
-                judgement = judged(label, solved, texts, own, self.set.terms, self.set.policy)
+                judgement = best_judged(label, alternatives, texts, own, self.set.terms, self.set.policy)
                 hit = node.next[texts] = (judgement, _Node(own, {}))
                 self._remembered += 1
             judgement, node = hit
             yield judgement
 
-    def _root(self, question: tuple[tuple[str, Solved], ...]) -> _Node:
+    def _root(self, question: QuestionToMark) -> _Node:
         if self._remembered > MOST_REMEMBERED:
             self._roots.clear()
             self._remembered = 0

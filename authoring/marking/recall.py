@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any
+from typing import Any, TypeAlias
 
 from authoring.faults import FaultsFound, UsageError
 from authoring.marking.explaining import Terms
@@ -22,14 +22,19 @@ from authoring.specs.plan import Plan, plan_from
 from authoring.specs.yaml_tree import parse_tree
 from authoring.tasks.solved import Solved
 
+QuestionToMark: TypeAlias = "tuple[tuple[str, tuple[Solved, ...]], ...]"
+
 
 @dataclass(frozen=True, slots=True)
 class PaperToMark:
-    """One paper as the judge needs it: each part's label and what was solved, in order, grouped by question."""
+    """One paper as the judge needs it, grouped by question: each part's label, and what was solved.
+
+    A part of which the candidate answers one alternative has them all; every other part has one.
+    """
 
     code: str
     candidate: str
-    questions: tuple[tuple[tuple[str, Solved], ...], ...]
+    questions: tuple[QuestionToMark, ...]
 
     @property
     def labels(self) -> tuple[str, ...]:
@@ -47,7 +52,7 @@ class RecalledSet:
         decimal = "comma" if self.plan.layout.decimal == "comma" else "auto"
         self.policy = Policy(self.plan.bare_values, decimal)  # type: ignore[arg-type]
         self._places = {paper["code"]: at for at, paper in enumerate(data["papers"])}
-        self._made: dict[tuple[str, tuple[tuple[str, str], ...], int, int], tuple[tuple[str, Solved], ...]] = {}
+        self._made: dict[tuple[str, tuple[tuple[str, str], ...], int, int], QuestionToMark] = {}
         self._papers: dict[str, PaperToMark] = {}
 
     @property
@@ -69,7 +74,7 @@ class RecalledSet:
             self._papers[code] = PaperToMark(code, entry["candidate"] or "", questions)
         return self._papers[code]
 
-    def _question(self, entry: Mapping[str, Any], number: int, place: int) -> tuple[tuple[str, Solved], ...]:
+    def _question(self, entry: Mapping[str, Any], number: int, place: int) -> QuestionToMark:
         item = self.plan.items[number]
         variables = tuple(sorted(entry["variables"].items()))
         variant = _variant(item, entry["variables"], self.plan)
@@ -81,15 +86,12 @@ class RecalledSet:
         return self._made[key]
 
 
-def labelled(asked: Question, number: int) -> tuple[tuple[str, Solved], ...]:
+def labelled(asked: Question, number: int) -> QuestionToMark:
     """The parts of a question with the labels that scripts and records use."""
-    found: list[tuple[str, Solved]] = []
-    for part in asked.parts:
-        if part.choices:
-            found += [(f"{number}{part.label}-{choice.label}", choice.solved) for choice in part.choices]
-        else:
-            found.append((f"{number}{part.label}", part.solved))
-    return tuple(found)
+    return tuple(
+        (f"{number}{part.label}", tuple(choice.solved for choice in part.choices) or (part.solved,))
+        for part in asked.parts
+    )
 
 
 def recalled(folder: Path) -> RecalledSet:

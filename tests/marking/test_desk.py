@@ -12,6 +12,7 @@ from authoring.cli import shieldwright
 from authoring.faults import UsageError
 from authoring.marking.desk import KEYS, WIDTH, Desk
 from authoring.marking.ledger import Ledger
+from authoring.marking.pile import Judge
 from authoring.marking.recall import RecalledSet, recalled
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
@@ -157,3 +158,23 @@ def test_a_file_is_judged_and_kept(folder: Path, tmp_path: Path) -> None:
     assert "no paper 'ZZZZZ'" in result.output
     assert "a person to confirm" in result.output
     assert marks(folder) == {"1a": 3, "1b": 0, "1c": 1}
+
+
+def test_of_alternatives_the_better_one_counts_once(tmp_path: Path) -> None:
+    """A part of `either` is marked under its own label, out of one alternative's marks."""
+    two = "  - either:\n      - calculate: effective nuclear charge\n        of: V\n        electron: 4s\n"
+    two += "        marks: 1\n"
+    two += "      - calculate: effective nuclear charge\n        of: V\n        electron: 3d\n        marks: 1\n"
+    (tmp_path / "two.yaml").write_text(f"item: Two\nlevel: majors\nstory: Two ways.\nparts:\n{two}", encoding="utf-8")
+    (tmp_path / "plan.yaml").write_text("plan: Two\nitems: [two.yaml]\n", encoding="utf-8")
+    plan = read_plan(tmp_path / "plan.yaml")
+    made = assembled(plan, Terms(plan.practice, plan.slips), "two", [None])
+    folder = tmp_path / "set"
+    folder.mkdir()
+    (folder / RECORD).write_text(written(made), encoding="utf-8")
+    of = recalled(folder)
+    paper = of.paper(of.codes[0])
+    assert paper.labels == ("1a",)
+    for line, awarded in (("3.30", 1), ("4.30", 1), ("9.99", 0)):
+        (judgement,) = Judge(of).paper(paper, {"1a": (line,)})
+        assert (judgement.awarded, judgement.out_of) == (awarded, 1)
