@@ -21,6 +21,7 @@ from authoring.slips.diagnose import agrees
 from authoring.tasks.complete import roman
 from authoring.tasks.solved import Answer, Solved
 from authoring.working.numbers import Rounding
+from authoring.working.text import to_text
 
 _LINE_NUMBER = re.compile(
     r"^\W*(?:first wrong line|wrong line|line|zeile|l\.?)?\s*[:(]?\s*(\d{1,2})\b[):.;,\s-]*", re.IGNORECASE
@@ -94,11 +95,45 @@ def _worked(
     label: str, solved: Solved, lines: list[Written], own: Own, terms: Terms, policy: Policy, remarks: tuple[str, ...]
 ) -> Judgement:
     """Working and, where the part asks for one, a choice at its end."""
-    working = read_working(solved, [each for written in lines for each in statements_of(written)], own, terms)
-    choice = _choice(solved, working, lines)
+    as_key, others = _as_the_key(solved, lines, policy)
+    for at in as_key:
+        step = solved.steps[at]
+        if step.target.quantity in quantities():
+            own.set(step.target, step.line.value, False)
+    working = read_working(solved, [each for written in others for each in statements_of(written)], own, terms)
+    for at in as_key:
+        working.states[at] = LineState("key", stated=True, words="as the key has it")
+    if any(point.line in as_key for point in solved.points if point.aspect in ("choice", "reason")):
+        choice: Chosen | None = Chosen(True, "as the key has it", reason=True)
+    else:
+        choice = _choice(solved, working, lines)
     any_words = any(written.words for written in lines)
     points, certainty = awarded(working, choice, policy.bare_values, any_words)
     return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+
+
+def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tuple[set[int], list[Written]]:
+    """The lines of the key that stand in the script as the key prints them, and the script's other lines."""
+    found: set[int] = set()
+    others: list[Written] = []
+    printed: dict[str, int] = {}
+    for written in lines:
+        if not any(sign in written.text for sign in "=:→≈"):
+            others.append(written)
+            continue
+        printed = printed or {_plain(to_text(step.line.chain)): at for at, step in enumerate(solved.steps)}
+        text = written.text.replace(",", ".") if policy.decimal == "comma" else written.text
+        at = printed.get(_plain(text))
+        if at is None:
+            others.append(written)
+        else:
+            found.add(at)
+    return found, others
+
+
+def _plain(text: str) -> str:
+    """A line without its spaces and with one kind of minus, cross and comma."""
+    return "".join(text.split()).replace("−", "-").replace("×", "*").replace(",", ".")
 
 
 def _choice(solved: Solved, working: Working, lines: Sequence[Written]) -> Chosen | None:

@@ -28,6 +28,8 @@ def _energies() -> dict[str, Decimal]:
 
 def in_key_unit(value: Decimal, written: str, key: str) -> tuple[Decimal, str]:
     """A value in the key's unit, and what is wrong with the unit as written (nothing where none is written)."""
+    written = written.replace("_", "")
+    key = key.replace("_", "")  # `μ_B` prints as a symbol with a subscript and is typed without it
     if not written or written == key:
         return value, ""
     for table in (_energies(), _LENGTHS):
