@@ -28,6 +28,7 @@ class Chosen:
     rivals: tuple[str, ...] = ()
     open: bool = False
     given: bool = True
+    follows: bool = False  # what the candidate's own values lead to
     reason: bool | None = None  # True: values or a comparison give the reason; None: words that a person judges
 
 
@@ -39,7 +40,7 @@ def awarded(
     charged = _charged(points, working.states)
     judged = []
     for point in points:
-        if point.aspect in ("choice", "reason") and chosen is not None:
+        if chosen is not None and (point.aspect in ("choice", "reason") or working.solved.task == "read"):
             judged.append(_of_choice(point, chosen, any_words))
             continue
         state = working.states[point.line] if point.line < len(working.states) else LineState()
@@ -113,10 +114,13 @@ def _followed(point: Point, state: LineState, words: str) -> PointJudged:
 
 
 def _of_choice(point: Point, chosen: Chosen, any_words: bool) -> PointJudged:
-    if not chosen.given and point.aspect == "choice":
-        return PointJudged(point.code, 0, "no answer that can be read" if chosen.open else "not answered", chosen.open)
-    if point.aspect == "choice":
-        return PointJudged(point.code, int(chosen.right), chosen.words, chosen.open)
+    if point.aspect != "reason":
+        if not chosen.given:
+            words = "no answer that can be read" if chosen.open else "not answered"
+            return PointJudged(point.code, 0, words, chosen.open)
+        right = chosen.right or (chosen.follows and point.follow_through)
+        words = f"follow-through: {chosen.words}" if right and not chosen.right else chosen.words
+        return PointJudged(point.code, int(right), words, chosen.open)
     if chosen.reason:
         return PointJudged(point.code, 1, "the reason: values compared")
     if any_words:

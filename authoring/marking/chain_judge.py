@@ -7,14 +7,16 @@ from dataclasses import dataclass, field
 from decimal import Decimal
 
 from authoring.faults import ContentError
-from authoring.marking.explaining import Explained, Terms, explained
+from authoring.marking.explaining import GOOD, RANK, Explained, Terms, explained
 from authoring.marking.forms import Written
 from authoring.marking.judgement import Own
 from authoring.marking.tallies import same_tally
-from authoring.marking.trace import frontier, traced
+from authoring.marking.trace import Known, Traced, frontier, traced
 from authoring.shielding.quantity import Target, Value, quantities, quantity
 from authoring.shielding.screening import Group
 from authoring.shielding.solve import Step, evaluate
+from authoring.slips.catalogue import Slips
+from authoring.slips.outcomes import Combination, outcomes
 from authoring.tasks.solved import Solved
 from authoring.working.numbers import Rounding
 
@@ -22,6 +24,10 @@ from authoring.working.numbers import Rounding
 LABELS = {
     "S": {"screening constant"},
     "Zeff": {"effective nuclear charge", "valence-count charge", "SCF charge"},
+    "Z_core": {"valence-count charge"},
+    "Z_SCF": {"SCF charge"},
+    "Z": {"atomic number from Kα"},
+    "n": {"unpaired electrons"},
     "E": {"orbital energy", "total energy", "Moseley Kα energy", "ionization energy"},
     "IE": {"ionization energy", "measured ionization energy"},
     "r": {
@@ -33,6 +39,14 @@ LABELS = {
     "χ": {"Allred-Rochow electronegativity"},
     "μ": {"spin-only magnetic moment"},
 }
+
+
+# What lines beside the working state: they are no lines of the key.
+CONSTANTS = {"n*", "R", "N", "l", "a0", "a_0", "R_H", "Ry"}
+
+# A line that says anew what stands already is less likely than a new one with one slip, likelier than with two.
+RESTATED = 3.5
+SLIPPED = (RANK["slip"], 2)
 
 
 @dataclass(slots=True)
@@ -56,18 +70,37 @@ class Working:
     solved: Solved
     states: list[LineState]
     own: Own
+    slips: Slips
     remarks: list[str] = field(default_factory=list)
+
+    def did(self, name: str) -> str:
+        """What a candidate with a slip did."""
+        return self.slips.named(name).did
 
 
 def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Terms) -> Working:
     """Hold every statement of a script's part against the lines of its key."""
-    working = Working(solved, [LineState() for _ in solved.steps], own)
-    for written in lines:
-        for statement in (*written.earlier, written):
-            if statement.remark:
-                working.remarks.append(f"{statement.text[:60]}: {statement.remark}")
-            _hold(working, statement, terms)
+    working = Working(solved, [LineState() for _ in solved.steps], own, terms.slips)
+    statements = [each for written in lines for each in (*written.earlier, written)]
+    for at, statement in enumerate(statements):
+        if statement.remark:
+            working.remarks.append(f"{statement.text[:60]}: {statement.remark}")
+        _hold(working, statement, terms, at == len(statements) - 1)
+    _settle(working)
     return working
+
+
+def _settle(working: Working) -> None:
+    """Slips that one line cannot tell apart may be told by another: what all the doubtful lines share is meant."""
+    doubtful = [state for state in working.states if state.rivals and state.slips and state.finding == "slip"]
+    sure = {state.slips for state in working.states if state.sure and state.finding == "slip" and state.spoiled}
+    shared = set.intersection(*({" + ".join(each.slips), *each.rivals} for each in doubtful)) if doubtful else set()
+    for state in doubtful:
+        among = {" + ".join(state.slips), *state.rivals}
+        told = {name for (name,) in sure if name in among} or shared
+        if len(told) == 1 and " + " not in (name := told.pop()):
+            state.slips, state.rivals, state.sure = (name,), (), True
+            state.words = working.did(name)
 
 
 def statements_of(written: Written) -> list[Written]:
@@ -93,10 +126,10 @@ def statements_of(written: Written) -> list[Written]:
     return found
 
 
-def _hold(working: Working, written: Written, terms: Terms) -> None:
+def _hold(working: Working, written: Written, terms: Terms, last: bool) -> None:
     """Find the line that a statement is about, and note what it is."""
     if written.kind == "chain":
-        _hold_number(working, written, terms)
+        _hold_number(working, written, terms, last)
     elif written.kind in ("configuration", "groups", "tally", "electron"):
         _hold_statement(working, written, terms)
 
@@ -131,21 +164,26 @@ def _explain_statement(target: Target, value: object, own: dict[Target, Value], 
         return Explained(
             "key", evaluate(target, terms.practice), words="agrees with the key, though not with the line before"
         )
-    several = list(terms.slips.touching(target))
-    hits = []
-    for slip in sorted(several, key=lambda each: -each.likelihood):
-        try:
-            trace = traced(target, terms.practice, known, (slip,))
-        except ContentError:
-            continue
-        if _same(trace[-1].value, value):
-            hits.append((slip, trace))
-    if hits:
-        slip, trace = hits[0]
-        rivals = tuple((other,) for other, _ in hits[1:])
-        return Explained("slip", trace[-1].value, trace, (slip,), rivals, slip.did, sure=not rivals)
+    for most in (1, 2):
+        hits = _hits(target, value, known, terms, most)
+        if hits:
+            slips, trace = hits[0]
+            rivals = tuple(others for others, _ in hits[1:])
+            words = " ".join(slip.did for slip in slips)
+            return Explained("slip", trace[-1].value, trace, slips, rivals, words, sure=not rivals and most == 1)
     kept = value if target.quantity in ("configuration", "first electron lost") else None
     return Explained("open", kept, words="no practice or slip in the catalogue explains this", sure=False)
+
+
+def _hits(
+    target: Target, value: object, known: Known, terms: Terms, size: int
+) -> list[tuple[Combination, tuple[Traced, ...]]]:
+    """The slips, or pairs of them, under which a statement is what the practice gives; likeliest first."""
+    hits = []
+    for outcome in outcomes(target, terms.practice, known, terms.slips, size):
+        if len(outcome.slips) == size and _same(outcome.answer, value):
+            hits.append((outcome.slips, traced(target, terms.practice, known, outcome.slips)))
+    return hits
 
 
 def _same(right: object, value: object) -> bool:
@@ -170,7 +208,7 @@ def _members(group: Group) -> frozenset[tuple[int, int]]:
 # --- numbers ---------------------------------------------------------------------------------------
 
 
-def _hold_number(working: Working, written: Written, terms: Terms) -> None:
+def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -> None:
     candidates = list(_open_lines(working, _names_for(written), written))
     candidates = [at for at in candidates if quantity(working.solved.steps[at].target.quantity).numeric]
     found: list[tuple[int, Explained]] = []
@@ -187,13 +225,18 @@ def _hold_number(working: Working, written: Written, terms: Terms) -> None:
         )
     if not found:
         return
-    at, best = min(found, key=lambda pair: (pair[1].rank, _place(working, pair[0])))
+    at, best = min(found, key=lambda pair: _cost(working, *pair))
+    if last and written.label is None and found[-1][0] == len(working.states) - 1 and found[-1][1].rank < SLIPPED:
+        at, best = found[-1]  # a bare value at the end is the answer
     if best.finding == "open" and written.label is None and not _final_bare(working, written):
         working.remarks.append(f"{written.text[:60]}: a side calculation, not judged")
         return
     if best.finding == "open":
         at = candidates[-1]
         best = dict(found)[at]
+    unit = working.solved.steps[at].line.unit
+    if unit and not written.unit and best.finding in (*GOOD, "slip"):
+        working.remarks.append(f"{written.text[:60]}: the unit is missing; it is {unit}")
     _note_subtrahend(working, at, written, terms)
     _note(working, at, best, terms)
 
@@ -201,9 +244,7 @@ def _hold_number(working: Working, written: Written, terms: Terms) -> None:
 def _names_for(written: Written) -> set[str]:
     if written.label in LABELS:
         return LABELS[written.label]
-    if written.label is not None:
-        return set()
-    return set(quantities())
+    return set() if written.label in CONSTANTS else set(quantities())
 
 
 def _final_bare(working: Working, written: Written) -> bool:
@@ -211,9 +252,11 @@ def _final_bare(working: Working, written: Written) -> bool:
     return not working.states[-1].stated or len(working.states) == 1
 
 
-def _place(working: Working, at: int) -> tuple[bool, int]:
-    """Among lines that a statement fits equally: one not stated yet, the last of them."""
-    return (working.states[at].stated, -at)
+def _cost(working: Working, at: int, found: Explained) -> tuple[float, bool, int]:
+    """How well a statement fits a line; one not stated yet is preferred to saying the same again, the last of them."""
+    stated = working.states[at].stated
+    finding, slips = found.rank
+    return (finding + max(0, slips - 1) + (RESTATED if stated else 0), stated, -at)
 
 
 def _rounding(solved: Solved, at: int) -> Rounding | None:

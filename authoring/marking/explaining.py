@@ -6,7 +6,8 @@ practice with slips what a misunderstanding makes of it.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Callable
+from dataclasses import dataclass, replace
 from decimal import Decimal
 from functools import lru_cache
 from typing import Literal
@@ -32,6 +33,11 @@ RANK: dict[Finding, int] = {
 
 # Values worked on with intermediates of three figures stay within this of the exact one.
 EARLY = Decimal("0.005")
+# A sum of rounded terms may be off by this much; less is no mistake of anybody's.
+WORKED = Decimal("0.0005")
+GOOD: tuple[Finding, ...] = ("right", "key", "early")
+# A miscount that a slip explains is the slip, and so is a group left out: the misunderstanding says more.
+_SLIPS_AS_WELL = ("miscount", "dropped term", "carry")
 UNEXPLAINED = "no practice or slip in the catalogue explains this value"
 # With this many figures a value says enough to be told from its neighbours (common practice, no source).
 FEWEST_FIGURES = 3
@@ -77,47 +83,63 @@ def explained(
     terms: Terms,
 ) -> Explained:
     """A statement of a number, for one numeric target. `key` is the key's value, `unit` the key's unit."""
-    value = written.value
-    if value is None:
+    if written.value is None:
         return Explained("open", None, words="no value is stated")
-    value, trouble = in_key_unit(value, written.unit, unit)
-    intended = _intended(written, value)
+    value, trouble = in_key_unit(written.value, written.unit, unit)
     own = {each: had for each, had in own.items() if each != target}
     known = frontier(target, terms.practice, own)
-    found = _by_terms(target, written, known, terms) or _of_value(target, intended, known, key, rounding, terms)
+    found = _by_terms(target, written, known, terms)
+    if found is None:
+        found = _of_value(target, value, known, key, rounding, terms)
+        if found.finding not in GOOD:
+            found = _as_meant(found, written, value, unit, lambda meant: _of_value(target, meant, known, key, None, terms))
+    elif not _comes_to(found.trace[-1].value, value):
+        words = f"the arithmetic: the terms come to {_short(found.trace[-1].value)}, not {_short(value)}"
+        return _miscalculated(found, value, words)
     if found.finding in ("right", "early") and trouble:
         return Explained("unit", value, found.trace, words=trouble)
-    if intended != value and not _rounds_to(intended, value):
-        words = f"the arithmetic: the line comes to {_short(intended)}, not {_short(value)}"
-        if found.finding in ("right", "key", "early"):
-            return Explained("arithmetic", value, found.trace, words=words)
-        return Explained(found.finding, value, found.trace, found.slips, found.rivals, f"{found.words}; {words}", False)
-    return Explained(
-        found.finding,
-        _kept(found, value, known, target),
-        found.trace,
-        found.slips,
-        found.rivals,
-        found.words,
-        found.sure,
-    )
+    return replace(found, value=_kept(found, value))
 
 
-def _kept(found: Explained, value: Decimal, known: Known, target: Target) -> Value:
+def _as_meant(
+    found: Explained, written: Written, value: Decimal, unit: str, explain_meant: Callable[[Decimal], Explained]
+) -> Explained:
+    """What the worked member of a chain comes to, where the value after it is not explained by itself."""
+    meant = _meant(written, unit)
+    if meant is None or _comes_to(meant, value):
+        return found
+    other = explain_meant(meant)
+    if other.finding not in GOOD and (other.finding != "slip" or (found.finding == "slip" and found.sure)):
+        return found
+    return _miscalculated(other, value, f"the arithmetic: the line comes to {_short(meant)}, not {_short(value)}")
+
+
+def _miscalculated(found: Explained, value: Decimal, words: str) -> Explained:
+    if found.finding in GOOD:
+        return Explained("arithmetic", value, found.trace, words=words)
+    return replace(found, value=value, words=f"{found.words}; {words}", sure=False)
+
+
+def _kept(found: Explained, value: Decimal) -> Value:
     """The exact value where the statement rounds it; the candidate's own figures otherwise."""
-    if found.finding in ("right", "slip") and found.trace:
+    if found.finding in ("right", "slip", "early") and found.trace:
         exact = found.trace[-1].value
         if isinstance(exact, Decimal) and _rounds_to(exact, value):
             return exact
     return value
 
 
-def _intended(written: Written, value: Decimal) -> Decimal:
-    """What the first worked member of a chain comes to: what the candidate meant before adding up."""
+def _meant(written: Written, unit: str) -> Decimal | None:
+    """What the first worked member of a chain comes to, in the key's unit: what was meant before adding up."""
     for member in written.members:
-        if member.value is not None and not member.shown and written.unit == (member.unit or written.unit):
-            return member.value
-    return value
+        if member.value is not None and not member.shown:
+            return in_key_unit(member.value, member.unit or written.unit, unit)[0]
+    return None
+
+
+def _comes_to(exact: Decimal, value: Decimal) -> bool:
+    """Whether working that comes to one value may be rounded to the other, on the way or at the end."""
+    return _rounds_to(exact, value) or (value != 0 and abs(exact - value) <= abs(value) * WORKED)
 
 
 def _rounds_to(exact: Decimal, value: Decimal) -> bool:
@@ -226,8 +248,7 @@ def _by_slips(
         rivals = tuple(each.slips for each in several[1:] if len(each.slips) == len(first.slips))
         by_pen = plain_arithmetic(target, value, terms.practice, dict(known), rounding)
         trace = traced(target, terms.practice, known, first.slips)
-        # A miscount that a slip explains is the slip: nobody could tell them apart, and the slip says more.
-        by_pen = tuple(each for each in by_pen if each.kind != "miscount")
+        by_pen = tuple(each for each in by_pen if each.kind not in _SLIPS_AS_WELL)
         sure = len(first.slips) == 1 and not rivals and not by_pen
         words = " ".join(slip.did for slip in first.slips)
         if by_pen:

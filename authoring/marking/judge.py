@@ -15,6 +15,8 @@ from authoring.marking.choice_judge import chosen
 from authoring.marking.explaining import Terms, explained
 from authoring.marking.forms import DecimalMark, Written
 from authoring.marking.judgement import Certainty, Judgement, Own, PointJudged, least
+from authoring.marking.tidy import lowered, tidied
+from authoring.marking.trace import way_to
 from authoring.marking.written import read_line
 from authoring.shielding.quantity import quantities
 from authoring.slips.diagnose import agrees
@@ -27,6 +29,8 @@ _LINE_NUMBER = re.compile(
     r"^\W*(?:first wrong line|wrong line|line|zeile|l\.?)?\s*[:(]?\s*(\d{1,2})\b[):.;,\s-]*", re.IGNORECASE
 )
 _BLANK_LABEL = re.compile(r"^\s*\(?([ivxl]{1,6})[).:]+\s*", re.IGNORECASE)
+
+_ONE_TYPE = str.maketrans({",": ".", "{": None, "}": None, "x": "*"})
 
 Texts = tuple[str, ...]
 
@@ -103,6 +107,7 @@ def _worked(
     working = read_working(solved, [each for written in others for each in statements_of(written)], own, terms)
     for at in as_key:
         working.states[at] = LineState("key", stated=True, words="as the key has it")
+    _imply(working, as_key, terms)
     if any(point.line in as_key for point in solved.points if point.aspect in ("choice", "reason")):
         choice: Chosen | None = Chosen(True, "as the key has it", reason=True)
     else:
@@ -110,6 +115,20 @@ def _worked(
     any_words = any(written.words for written in lines)
     points, certainty = awarded(working, choice, policy.bare_values, any_words)
     return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+
+
+def _imply(working: Working, as_key: set[int], terms: Terms) -> None:
+    """The lines on the way to lines of the key are implied by them, where nothing else is said about them."""
+    implied = {
+        target
+        for at in as_key
+        if working.solved.steps[at].target.quantity in quantities()
+        for target in way_to(working.solved.steps[at].target, terms.practice)
+    }
+    for at, step in enumerate(working.solved.steps):
+        if step.target in implied and working.states[at].finding == "unseen":
+            working.states[at] = LineState("key")
+            working.own.set(step.target, step.line.value, False)
 
 
 def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tuple[set[int], list[Written]]:
@@ -132,8 +151,8 @@ def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tup
 
 
 def _plain(text: str) -> str:
-    """A line without its spaces and with one kind of minus, cross and comma."""
-    return "".join(text.split()).replace("−", "-").replace("×", "*").replace(",", ".")
+    """A line without its spaces, in one typography."""
+    return "".join(lowered(tidied(text)).split()).translate(_ONE_TYPE)
 
 
 def _choice(solved: Solved, working: Working, lines: Sequence[Written]) -> Chosen | None:
@@ -271,7 +290,7 @@ def _line_number(lines: Sequence[Written], policy: Policy) -> tuple[int | None, 
     number: int | None = None
     rest: list[Written] = []
     for written in lines:
-        for piece in _statements(written.text):
+        for piece in _statements(written.text) if number is None else [written.text]:
             match = _LINE_NUMBER.match(piece) if number is None else None
             named = match is not None and (match[0].strip(" :(;,.-)") != match[1] or not piece[match.end() :].strip())
             if match is not None and named:
@@ -283,6 +302,6 @@ def _line_number(lines: Sequence[Written], policy: Policy) -> tuple[int | None, 
 
 
 def _statements(text: str) -> list[str]:
-    """A line cut at its first semicolon: `line 3; 19.70`."""
+    """A line cut after the number of a line that it begins with: `line 3; 19.70`."""
     head, semicolon, tail = text.partition(";")
-    return [head, tail] if semicolon else [text]
+    return [head, tail] if semicolon and _LINE_NUMBER.fullmatch(head) else [text]

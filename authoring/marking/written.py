@@ -109,13 +109,22 @@ def _statement(plain: str, decimal: DecimalMark) -> Written | None:
     )
 
 
+def _one_of_several(piece: str, decimal: DecimalMark) -> Written | None:
+    """A configuration, groups, or an equation."""
+    about, rest = split_about(piece)
+    found = read_groups(rest) or read_configuration(rest) or read_chain(rest, decimal)
+    return replace(found, about=about or found.about) if found else None
+
+
 def _several(plain: str, decimal: DecimalMark) -> Written | None:
     """Several equations on one line: the last, with the others before it."""
     pieces = [piece.strip() for piece in _APART.split(plain)]
     if not 2 <= len(pieces) <= _MOST_STATEMENTS:
         return None
-    read = [read_chain(piece, decimal) for piece in pieces if piece]
+    read = [_one_of_several(piece, decimal) for piece in pieces if piece]
     found = tuple(each for each in read if each is not None)
-    if len(found) != len(read) or not found or any(each.label is None for each in found):
+    if len(found) != len(read) or not any(each.kind != "chain" or each.label for each in found):
+        return None
+    if sum(each.kind == "chain" and each.label is None for each in found) > 1:
         return None
     return replace(found[-1], earlier=found[:-1])
