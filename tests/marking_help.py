@@ -131,10 +131,10 @@ class Candidate:
             return written
         if solved.task in ("read", "identify", "correct"):
             return self._write_as_key(solved)
-        steps = self.chain(solved)
-        self.own.update({step.target: step.line.value for step in steps})
         if solved.task == "select":
             return self._select(solved)
+        steps = self.chain(solved)
+        self.own.update({step.target: step.line.value for step in steps})
         if solved.task == "complete":
             return self._complete(solved)
         several = len(solved.targets) > 1 or solved.task in ("rank", "decide")
@@ -338,9 +338,11 @@ class Candidate:
     def _select(self, solved: Solved) -> Written:
         options = [option for each in solved.exhibits if isinstance(each, Options) for option in each.options]
         (target,) = solved.targets
-        text = work(target, self.practice, {k: v for k, v in self.own.items() if k != target})[-1].line
-        wanted = f"{text.shown} {text.unit}".strip()
+        line = work(target, self.practice, {k: v for k, v in self.own.items() if k != target})[-1].line
+        wanted = f"{line.shown} {line.unit}".strip()
         hits = [option.letter for option in options if option.shown == wanted]
+        if hits:  # a letter shows this value, and nothing of the way there
+            self.own[target] = line.value
         form = self.rng.choice(["{}", "({})", "{})", "option {}"])
         return Written([form.format(hits[0])] if hits else [], {target: "value"} if hits else {})
 

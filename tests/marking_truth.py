@@ -58,6 +58,7 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
     targets = [target for target in solved.targets if target.quantity in quantities()]
     chain = {step.target for target in targets for step in work(target, candidate.practice, own)} | set(own)
     lost: set[str] = set()
+    by_luck = False  # a wrong way that ends in the key's value earns what a marker makes of it
     deviating: list[Target] = []
     pointed = {point.line for point in solved.points}
     for at, step in enumerate(solved.steps):
@@ -68,14 +69,31 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
             lost |= {point.code for point in solved.points if point.line == at}
             continue
         if not _deviates(target, candidate):
+            if _rests_on_wrong(target, candidate):
+                lost |= {p.code for p in solved.points if p.line == at and p.aspect not in ("choice", "reason")
+                         and not p.follow_through}
             continue
+        if quantity(target.quantity).numeric and _shown(target, candidate.value(target)) == _shown(target, step.line.value):
+            by_luck = True
         deviating.append(target)
         if at in pointed:
             lost |= {point.code for point in solved.points if point.line == at}
         else:
             lost |= _charged(solved, at)
     settled, choice = _choice(solved, candidate)
-    return Deserved(frozenset(lost | choice), tuple(deviating), settled)
+    return Deserved(frozenset(lost | choice), tuple(deviating), settled and not by_luck)
+
+
+def _shown(target: Target, value: Value) -> Decimal:
+    """A number as the quantity is printed."""
+    return quantity(target.quantity).rounding.apply(value)
+
+
+def _rests_on_wrong(target: Target, candidate: Candidate) -> bool:
+    """Whether a line's inputs are not the key's, and neither is its value."""
+    key = evaluate(target, PUBLISHED)
+    needs = quantity(target.quantity).needs(target, PUBLISHED)
+    return key != candidate.value(target) and any(evaluate(each, PUBLISHED) != candidate.value(each) for each in needs)
 
 
 def _deviates(target: Target, candidate: Candidate) -> bool:

@@ -29,6 +29,7 @@ class Chosen:
     open: bool = False
     given: bool = True
     follows: bool = False  # what the candidate's own values lead to
+    names: tuple[str, ...] = ()  # what was chosen, where it is not the right answer
     reason: bool | None = None  # True: values or a comparison give the reason; None: words that a person judges
 
 

@@ -253,17 +253,20 @@ def _final_bare(working: Working, written: Written) -> bool:
 
 
 def _cost(working: Working, at: int, found: Explained) -> tuple[float, bool, int]:
-    """How well a statement fits a line; one not stated yet is preferred to saying the same again, the last of them."""
+    """How well a statement fits a line; one not stated yet is preferred to saying the same again, the first of them."""
     stated = working.states[at].stated
     finding, slips = found.rank
-    return (finding + max(0, slips - 1) + (RESTATED if stated else 0), stated, -at)
+    return (finding + max(0, slips - 1) + (RESTATED if stated else 0), stated, at)
 
 
 def _rounding(solved: Solved, at: int) -> Rounding | None:
-    if at == len(solved.steps) - 1 and solved.answer.kind == "number":
-        places = len(solved.answer.shown.partition(".")[2])
-        return Rounding(places=places) if quantity(solved.quantity).rounding.places is not None else None
-    return None
+    """How the answer is to be given, as the key gives it; other lines are rounded as their quantities are."""
+    if at != len(solved.steps) - 1 or solved.answer.kind != "number":
+        return None
+    shown = solved.answer.shown
+    if quantity(solved.quantity).rounding.places is not None:
+        return Rounding(places=len(shown.partition(".")[2]))
+    return Rounding(figures=max(1, len(Decimal(shown.replace("−", "-")).as_tuple().digits)))
 
 
 def _subtraction(step: Step, written: Written) -> tuple[Decimal, Decimal] | None:
@@ -371,7 +374,7 @@ def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
         found.sure,
     )
     if found.finding == "slip" and not spoiled:
-        state.finding, state.words = "right", ""
+        state.finding, state.words, state.sure = "right", "", True
     working.states[at] = state
     if found.value is not None:
         key = working.solved.steps[at].line.value

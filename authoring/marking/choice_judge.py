@@ -4,21 +4,60 @@ from __future__ import annotations
 
 import re
 from collections.abc import Iterable, Sequence
+from dataclasses import replace
 from decimal import Decimal
 
 from authoring.atoms.species import Species
 from authoring.atoms.subshell import Subshell
 from authoring.marking.awarding import Chosen
 from authoring.marking.forms import Written
+from authoring.marking.judgement import Own
 from authoring.marking.written import read_line
+from authoring.shielding.practice import Practice
+from authoring.shielding.quantity import Target
+from authoring.shielding.solve import evaluate
 from authoring.tasks.solved import Answer, Option, Options, Solved
 from authoring.working.numbers import shown
 
 _NEGATED = re.compile(r"\b(?:not|neither|nor|never|isn't|nicht|kein\w*)\b", re.IGNORECASE)
 
 
-def chosen(solved: Solved, lines: Sequence[Written]) -> Chosen:
-    """What a script's lines choose, held against the part's answer."""
+def chosen(solved: Solved, lines: Sequence[Written], own: Own, practice: Practice) -> Chosen:
+    """What a script's lines choose, held against the part's answer and against the candidate's own values."""
+    found = _held(solved, lines)
+    if found.right or not found.given or found.open or not found.names:
+        return found
+    mine = own_order(solved, own, practice)
+    if not mine:
+        return found
+    led = found.names == mine if solved.answer.kind == "order" else found.names == (mine[_end(solved, practice)],)
+    if not led:
+        return found
+    # The values say all about what was misunderstood: nothing more was in the choice.
+    return replace(found, follows=True, slips=(), rivals=(), words=f"{found.words}; the candidate's own values say so")
+
+
+def own_order(solved: Solved, own: Own, practice: Practice) -> tuple[str, ...]:
+    """The things compared from small to large by the candidate's values; empty where none of these is wrong."""
+    if len(solved.targets) < 2 or not any(target in own.off for target in solved.targets):
+        return ()
+    values = [(own.values.get(target, evaluate(target, practice)), _name(target, solved)) for target in solved.targets]
+    return tuple(name for _, name in sorted(values))
+
+
+def _end(solved: Solved, practice: Practice) -> int:
+    """Whether the largest (-1) or the smallest (0) of the things is asked for."""
+    ordered = sorted((evaluate(target, practice), _name(target, solved)) for target in solved.targets)
+    return -1 if ordered[-1][1] == solved.answer.shown else 0
+
+
+def _name(target: Target, solved: Solved) -> str:
+    value = solved.answer.value
+    by_electron = isinstance(value[0] if isinstance(value, tuple) else value, Subshell)
+    return target.electron.label if by_electron and target.electron else target.species.label
+
+
+def _held(solved: Solved, lines: Sequence[Written]) -> Chosen:
     answer = solved.answer
     if answer.kind == "letter":
         return _letter(solved, lines)
@@ -45,7 +84,8 @@ def _letter(solved: Solved, lines: Sequence[Written]) -> Chosen:
             continue
         if option.letter == solved.answer.value:
             return Chosen(True, f"({option.letter}), the right option")
-        return Chosen(False, f"({option.letter}): {', '.join(option.slips) or 'wrong'}", option.slips)
+        words = f"({option.letter}): {', '.join(option.slips) or 'wrong'}"
+        return Chosen(False, words, option.slips, names=(option.letter,))
     return _nothing(lines)
 
 
@@ -75,7 +115,8 @@ def _thing(solved: Solved, lines: Sequence[Written]) -> Chosen:
             return Chosen(True, f"{label}: the right choice", reason=compares(lines))
         slips = next((wrong.slips for wrong in solved.wrong if wrong.shown == label), ())
         rivals = tuple(" + ".join(wrong.slips) for wrong in solved.wrong if wrong.shown == label)[1:]
-        return Chosen(False, f"{label}, not {right}", slips, rivals, reason=compares(lines))
+        words = f"{label}, not {right}"
+        return Chosen(False, words, slips, rivals, reason=compares(lines), names=(label,))
     return _nothing(lines)
 
 
@@ -132,9 +173,9 @@ def _order(solved: Solved, lines: Sequence[Written]) -> Chosen:
             return Chosen(True, "the right order", reason=compares(lines))
         slips = _slips_of_order(solved, found)
         words = "the order reversed" if found == tuple(reversed(right)) else "not the right order"
-        return Chosen(
-            False, words, slips[0] if slips else (), tuple(map(" + ".join, slips[1:])), reason=compares(lines)
-        )
+        rivals = tuple(map(" + ".join, slips[1:]))
+        first = slips[0] if slips else ()
+        return Chosen(False, words, first, rivals, reason=compares(lines), names=found)
     return _nothing(lines)
 
 

@@ -11,7 +11,7 @@ from dataclasses import replace
 
 from authoring.marking.awarding import Chosen, awarded
 from authoring.marking.chain_judge import LineState, Working, read_working, statements_of
-from authoring.marking.choice_judge import chosen
+from authoring.marking.choice_judge import chosen, options_of
 from authoring.marking.explaining import Terms, explained
 from authoring.marking.forms import DecimalMark, Written
 from authoring.marking.judgement import Certainty, Judgement, Own, PointJudged, least
@@ -111,7 +111,7 @@ def _worked(
     if any(point.line in as_key for point in solved.points if point.aspect in ("choice", "reason")):
         choice: Chosen | None = Chosen(True, "as the key has it", reason=True)
     else:
-        choice = _choice(solved, working, lines)
+        choice = _choice(solved, working, lines, terms)
     any_words = any(written.words for written in lines)
     points, certainty = awarded(working, choice, policy.bare_values, any_words)
     return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
@@ -155,17 +155,33 @@ def _plain(text: str) -> str:
     return "".join(lowered(tidied(text)).split()).translate(_ONE_TYPE)
 
 
-def _choice(solved: Solved, working: Working, lines: Sequence[Written]) -> Chosen | None:
+def _choice(solved: Solved, working: Working, lines: Sequence[Written], terms: Terms) -> Chosen | None:
     """What was chosen; None where the part asks for no choice."""
     if not any(point.aspect in ("choice", "reason") for point in solved.points) and solved.answer.accepted is None:
         return None
-    found = chosen(solved, lines)
+    found = chosen(solved, lines, working.own, terms.practice)
+    if found.slips and any(state.stated and state.slips for state in working.states):
+        found = replace(found, slips=(), rivals=())  # the lines say more than the choice
+    if solved.answer.kind == "letter":
+        _take_option(solved, found, working.own)
     last = working.states[-1] if working.states else LineState()
     if found.reason is None and last.stated and last.spoiled:
         return replace(found, slips=found.slips or last.slips, rivals=found.rivals or last.rivals)
     if found.reason and any(state.stated and state.finding in ("open", "slip") for state in working.states):
         return replace(found, reason=None if any(state.finding == "open" for state in working.states) else True)
     return found
+
+
+def _take_option(solved: Solved, found: Chosen, own: Own) -> None:
+    """The candidate goes on with the value of the option chosen."""
+    (target,) = solved.targets
+    letter = str(solved.answer.value) if found.right else "".join(found.names)
+    option = next((each for each in options_of(solved) if each.letter == letter), None)
+    number = read_line(option.shown).value if option else None
+    if number is None:
+        return
+    key = next(step.line.value for step in solved.steps if step.target == target)
+    own.set(target, key if found.right else number, not found.right)
 
 
 def _judgement(

@@ -9,6 +9,7 @@ from authoring.atoms.constants import constant
 from authoring.working.numbers import EXACT
 
 # How many of the first unit make one of the second's dimension base (eV, pm, Bohr magneton).
+FEWEST = 3
 _LENGTHS = {"pm": Decimal(1), "Å": Decimal(100), "A": Decimal(100), "nm": Decimal(1000), "m": Decimal("1e12")}
 
 
@@ -43,7 +44,11 @@ def in_key_unit(value: Decimal, written: str, key: str) -> tuple[Decimal, str]:
 
 def _as_precise(converted: Decimal, given: Decimal) -> Decimal:
     """A converted value with as many significant figures as were given."""
-    figures = len(given.as_tuple().digits)
+    _, digits, exponent = given.as_tuple()
+    figures = len(digits)
+    if exponent == 0:
+        # The zeros that end a whole number only fill places: −87600 has three figures, or nobody can tell.
+        figures = max(FEWEST, len("".join(map(str, digits)).rstrip("0")))
     if not converted:
         return converted
     places = figures - 1 - converted.adjusted()

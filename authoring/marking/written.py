@@ -113,6 +113,8 @@ def _one_of_several(piece: str, decimal: DecimalMark) -> Written | None:
     """A configuration, groups, or an equation."""
     about, rest = split_about(piece)
     found = read_groups(rest) or read_configuration(rest) or read_chain(rest, decimal)
+    if found is None and has_words(rest):
+        found = read_worded(rest, lambda core: read_chain(core, decimal))
     return replace(found, about=about or found.about) if found else None
 
 
