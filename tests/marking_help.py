@@ -178,7 +178,7 @@ class Candidate:
         return f"{label} = {self._result(step)}" if several else self._result(step)
 
     def _label(self, step: Step, several: bool) -> str:
-        names = {S: self.style.s, Z_EFF: self.style.z}
+        names = {S: self.style.s, Z_EFF: self.style.z, "unpaired electrons": "n"}
         label = names.get(step.target.quantity) or to_text(step.line.chain.first)
         if several:
             electrons = step.target.electron is not None

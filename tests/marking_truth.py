@@ -56,6 +56,7 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
     """
     own = dict(before)
     targets = [target for target in solved.targets if target.quantity in quantities()]
+    _has_its_electrons(targets, candidate)
     chain = {step.target for target in targets for step in work(target, candidate.practice, own)} | set(own)
     lost: set[str] = set()
     by_luck = False  # a wrong way that ends in the key's value earns what a marker makes of it
@@ -66,6 +67,7 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
         if target.quantity not in quantities() or target in before:
             continue
         if target not in chain:
+            by_luck = by_luck or _same_end(solved, candidate)
             lost |= {point.code for point in solved.points if point.line == at}
             continue
         if not _deviates(target, candidate):
@@ -80,8 +82,26 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
             lost |= {point.code for point in solved.points if point.line == at}
         else:
             lost |= _charged(solved, at)
+    # What is worked out on the way and is no line of the part was to be had from the parts before it.
+    lines = {step.target for step in solved.steps} | set(before)
+    by_luck = by_luck or any(target not in lines and _deviates(target, candidate) for target in chain)
     settled, choice = _choice(solved, candidate)
     return Deserved(frozenset(lost | choice), tuple(deviating), settled and not by_luck)
+
+
+def _has_its_electrons(targets: Sequence[Target], candidate: Candidate) -> None:
+    """Raise ContentError where the candidate's configuration has no such electron: nothing sensible is written."""
+    for target in targets:
+        if target.electron is not None:
+            configuration = evaluate(Target("configuration", target.species), candidate.practice)
+            if not configuration.count(target.electron):
+                raise ContentError("no such electron")
+
+
+def _same_end(solved: Solved, candidate: Candidate) -> bool:
+    """Whether another way ends in the key's values."""
+    numeric = [each for each in solved.targets if quantity(each.quantity).numeric]
+    return all(_shown(each, candidate.value(each)) == _shown(each, evaluate(each, PUBLISHED)) for each in numeric)
 
 
 def _shown(target: Target, value: Value) -> Decimal:
@@ -101,9 +121,17 @@ def _deviates(target: Target, candidate: Candidate) -> bool:
     mine = candidate.value(target)
     try:
         inputs = tuple(candidate.value(need) for need in what.needs(target, PUBLISHED))
-        return bool(what.value(target, PUBLISHED, inputs) != mine)
+        right = what.value(target, PUBLISHED, inputs)
+        return _members(right) != _members(mine) if target.quantity == "groups" else bool(right != mine)
     except ContentError:
         return True
+
+
+def _members(groups: Value) -> object:
+    """Groups without empty subshells: (3s,3p) of one s electron is (3s)."""
+    return frozenset(
+        (frozenset((each.n, max(0, each.l - 1)) for each in group.subshells), group.electrons) for group in groups
+    )
 
 
 def _charged(solved: Solved, line: int) -> set[str]:

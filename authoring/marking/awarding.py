@@ -62,7 +62,8 @@ def certainty_of(working: Working, chosen: Chosen | None, judged: Sequence[Point
             found.append("ambiguous")
     if chosen is not None and chosen.open:
         found.append("unexplained")
-    if chosen is not None and chosen.rivals:
+    # One of a few things chosen may be a guess; an option is the value of one slip.
+    if chosen is not None and (chosen.rivals or (chosen.slips and working.solved.answer.kind != "letter")):
         found.append("ambiguous")
     if any(point.open for point in judged):
         found.append("unexplained")

@@ -86,21 +86,42 @@ def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Term
         if statement.remark:
             working.remarks.append(f"{statement.text[:60]}: {statement.remark}")
         _hold(working, statement, terms, at == len(statements) - 1)
-    _settle(working)
+    _settle(working, terms)
     return working
 
 
-def _settle(working: Working) -> None:
-    """Slips that one line cannot tell apart may be told by another: what all the doubtful lines share is meant."""
+def _settle(working: Working, terms: Terms) -> None:
+    """Slips that one line cannot tell apart may be told by others: what all the doubtful lines share is meant, what
+    would have spoiled a line that is right is not."""
     doubtful = [state for state in working.states if state.rivals and state.slips and state.finding == "slip"]
-    sure = {state.slips for state in working.states if state.sure and state.finding == "slip" and state.spoiled}
-    shared = set.intersection(*({" + ".join(each.slips), *each.rivals} for each in doubtful)) if doubtful else set()
+    if not doubtful:
+        return
+    sure = {state.slips[0] for state in working.states if state.sure and state.spoiled and len(state.slips) == 1}
+    shared = set.intersection(*({" + ".join(each.slips), *each.rivals} for each in doubtful))
     for state in doubtful:
         among = {" + ".join(state.slips), *state.rivals}
-        told = {name for (name,) in sure if name in among} or shared
+        told = (sure & among) or shared or among
+        if len(told) > 1:
+            told = {name for name in told if " + " in name or not _contradicted(working, name, terms)}
         if len(told) == 1 and " + " not in (name := told.pop()):
             state.slips, state.rivals, state.sure = (name,), (), True
             state.words = working.did(name)
+
+
+def _contradicted(working: Working, name: str, terms: Terms) -> bool:
+    """Whether a slip would have spoiled a line that is stated and right."""
+    slip = terms.slips.named(name)
+    for step, state in zip(working.solved.steps, working.states, strict=True):
+        if not state.stated or state.spoiled or state.finding not in GOOD or step.target not in working.own.values:
+            continue
+        mine = working.own.values[step.target]
+        known = frontier(step.target, terms.practice, {k: v for k, v in working.own.values.items() if k != step.target})
+        try:
+            if traced(step.target, terms.practice, known, (slip,))[-1].value != mine:
+                return True
+        except ContentError:
+            return True
+    return False
 
 
 def statements_of(written: Written) -> list[Written]:

@@ -264,9 +264,9 @@ def _coarse(exact: Decimal, value: Decimal, rounding: Rounding | None) -> bool:
     figures = len(value.as_tuple().digits)
     wanted = min(FEWEST_FIGURES, (rounding.figures or FEWEST_FIGURES) if rounding else FEWEST_FIGURES)
     exponent = value.as_tuple().exponent
-    if rounding is not None and rounding.places is not None and isinstance(exponent, int) and -exponent >= 1:
+    if rounding is not None and rounding.places is not None and isinstance(exponent, int):
         # One decimal fewer than the key's says as much where the key ends in 0 or 5.
-        return -exponent < rounding.places - 1
+        return figures < wanted and -exponent < rounding.places - 1
     return figures < wanted
 
 

@@ -34,7 +34,7 @@ _REMEMBERED = 100_000
 _OK = frozenset(("ok", "ok.", "okay", "✓", "✔"))
 _BLANK = frozenset(("", "-", "--", "---", "...", "…"))
 _APART = re.compile(r";|,\s+(?=[A-Za-zσχμ][A-Za-z_*]{0,5}(?:\([^()]{1,8}\))?\s*[=≈])|\band\b(?=[^=]{1,12}=)")
-_MOST_STATEMENTS = 12
+_MOST_STATEMENTS = 40
 
 
 def read_line(text: str, decimal: DecimalMark = "auto") -> Written:

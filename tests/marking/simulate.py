@@ -208,7 +208,8 @@ class Careless(Candidate):
     def write(self, solved: Solved) -> Written:
         """A part with one error in it, if it has a sum or a difference to err in."""
         steps = self.chain(solved)
-        places = [step.target for step in steps if step.target.quantity in (S, Z_EFF)]
+        lines = {step.target for step in solved.steps}
+        places = [step.target for step in steps if step.target.quantity in (S, Z_EFF) and step.target in lines]
         if not places or any(target in self.own for target in places):
             return super().write(solved)
         place = self.rng.choice(places)
