@@ -49,7 +49,7 @@ class Deserved:
     settled: bool  # False: what it deserves is a matter of policy; marks are not compared
 
 
-def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value]) -> Deserved:
+def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value], written: Written) -> Deserved:
     """Marks lost: those of the lines that deviate from the practice on the candidate's own inputs.
 
     A deviating line without a point charges the value point of the next line that has one.
@@ -75,6 +75,8 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
                 lost |= {p.code for p in solved.points if p.line == at and p.aspect not in ("choice", "reason")
                          and not p.follow_through}
             continue
+        if target not in written.shows and _leaves_no_trace(solved, at, candidate):
+            continue
         if quantity(target.quantity).numeric and _shown(target, candidate.value(target)) == _shown(target, step.line.value):
             by_luck = True
         deviating.append(target)
@@ -96,6 +98,15 @@ def _has_its_electrons(targets: Sequence[Target], candidate: Candidate) -> None:
             configuration = evaluate(Target("configuration", target.species), candidate.practice)
             if not configuration.count(target.electron):
                 raise ContentError("no such electron")
+
+
+def _leaves_no_trace(solved: Solved, line: int, candidate: Candidate) -> bool:
+    """Whether a line that is not written leads to the right numbers all the same."""
+    if quantity(solved.steps[line].target.quantity).numeric:
+        return False
+    later = [step.target for step in solved.steps[line + 1 :] if step.target.quantity in quantities()]
+    following = next((target for target in later if quantity(target.quantity).numeric), None)
+    return following is not None and candidate.value(following) == evaluate(following, PUBLISHED)
 
 
 def _same_end(solved: Solved, candidate: Candidate) -> bool:

@@ -15,7 +15,7 @@ from authoring.marking.trace import Known, Traced, frontier, traced
 from authoring.shielding.quantity import Target, Value, quantities, quantity
 from authoring.shielding.screening import Group
 from authoring.shielding.solve import Step, evaluate
-from authoring.slips.catalogue import Slips
+from authoring.slips.diagnose import agrees
 from authoring.slips.outcomes import Combination, outcomes
 from authoring.tasks.solved import Solved
 from authoring.working.numbers import Rounding
@@ -70,17 +70,12 @@ class Working:
     solved: Solved
     states: list[LineState]
     own: Own
-    slips: Slips
     remarks: list[str] = field(default_factory=list)
-
-    def did(self, name: str) -> str:
-        """What a candidate with a slip did."""
-        return self.slips.named(name).did
 
 
 def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Terms) -> Working:
     """Hold every statement of a script's part against the lines of its key."""
-    working = Working(solved, [LineState() for _ in solved.steps], own, terms.slips)
+    working = Working(solved, [LineState() for _ in solved.steps], own)
     statements = [each for written in lines for each in (*written.earlier, written)]
     for at, statement in enumerate(statements):
         if statement.remark:
@@ -91,37 +86,40 @@ def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Term
 
 
 def _settle(working: Working, terms: Terms) -> None:
-    """Slips that one line cannot tell apart may be told by others: what all the doubtful lines share is meant, what
-    would have spoiled a line that is right is not."""
+    """Slips that one line cannot tell apart may be told by the others: the one that explains all of them is meant."""
     doubtful = [state for state in working.states if state.rivals and state.slips and state.finding == "slip"]
     if not doubtful:
         return
-    sure = {state.slips[0] for state in working.states if state.sure and state.spoiled and len(state.slips) == 1}
-    shared = set.intersection(*({" + ".join(each.slips), *each.rivals} for each in doubtful))
+    names = {name for state in doubtful for name in _among(state)}
+    fitting = {name for name in names if " + " not in name and _fits_all(working, name, terms)}
     for state in doubtful:
-        among = {" + ".join(state.slips), *state.rivals}
-        told = (sure & among) or shared or among
-        if len(told) > 1:
-            told = {name for name in told if " + " in name or not _contradicted(working, name, terms)}
-        if len(told) == 1 and " + " not in (name := told.pop()):
-            state.slips, state.rivals, state.sure = (name,), (), True
-            state.words = working.did(name)
+        told = fitting & _among(state)
+        if len(told) == 1:
+            state.slips, state.rivals, state.sure = (told.pop(),), (), True
+            state.words = terms.slips.named(state.slips[0]).did
 
 
-def _contradicted(working: Working, name: str, terms: Terms) -> bool:
-    """Whether a slip would have spoiled a line that is stated and right."""
-    slip = terms.slips.named(name)
-    for step, state in zip(working.solved.steps, working.states, strict=True):
-        if not state.stated or state.spoiled or state.finding not in GOOD or step.target not in working.own.values:
+def _among(state: LineState) -> set[str]:
+    """The explanations of a line that are left."""
+    return {" + ".join(state.slips), *state.rivals}
+
+
+def _fits_all(working: Working, name: str, terms: Terms) -> bool:
+    """Whether every line that is stated comes out so under a slip, from what else is stated."""
+    places = {step.target: state for step, state in zip(working.solved.steps, working.states, strict=True)}
+    said = {k: v for k, v in working.own.values.items() if k not in places or places[k].stated}
+    slip = (terms.slips.named(name),)
+    for target, state in places.items():
+        if not state.stated or target not in said or state.finding not in (*GOOD, "slip"):
             continue
-        mine = working.own.values[step.target]
-        known = frontier(step.target, terms.practice, {k: v for k, v in working.own.values.items() if k != step.target})
+        known = frontier(target, terms.practice, {k: v for k, v in said.items() if k != target})
         try:
-            if traced(step.target, terms.practice, known, (slip,))[-1].value != mine:
-                return True
+            value = traced(target, terms.practice, known, slip)[-1].value
         except ContentError:
-            return True
-    return False
+            return False
+        if not (agrees(value, said[target], target) or _same(value, said[target])):
+            return False
+    return True
 
 
 def statements_of(written: Written) -> list[Written]:

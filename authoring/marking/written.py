@@ -79,6 +79,8 @@ def _quick_again(plain: str, decimal: DecimalMark) -> Written | None:
 
 def _read_plain(plain: str, decimal: DecimalMark) -> Written:
     worded = has_words(plain)
+    if several := _several(plain, decimal):
+        return several
     try:
         check_bounds(plain)
     except Unreadable as error:
@@ -88,8 +90,7 @@ def _read_plain(plain: str, decimal: DecimalMark) -> Written:
         return _statement(piece, decimal) or read_chain(piece, decimal)
 
     found = (
-        _several(plain, decimal)
-        or _statement(plain, decimal)
+        _statement(plain, decimal)
         or (read_worded(plain, read) if worded else None)
         or read_chain(plain, decimal)
     )
@@ -111,10 +112,15 @@ def _statement(plain: str, decimal: DecimalMark) -> Written | None:
 
 def _one_of_several(piece: str, decimal: DecimalMark) -> Written | None:
     """A configuration, groups, or an equation."""
+    try:
+        check_bounds(piece)
+    except Unreadable:
+        return None
     about, rest = split_about(piece)
-    found = read_groups(rest) or read_configuration(rest) or read_chain(rest, decimal)
+    found = read_groups(rest) or read_configuration(rest)
     if found is None and has_words(rest):
         found = read_worded(rest, lambda core: read_chain(core, decimal))
+    found = found or read_chain(rest, decimal)
     return replace(found, about=about or found.about) if found else None
 
 

@@ -96,7 +96,7 @@ def sat(asked: Question, slips: tuple[Slip, ...], style: Style, rng: random.Rand
         before = dict(candidate.own)
         try:
             written = candidate.write(solved)
-            truth = deserved(solved, candidate, before) if written.lines else Deserved(frozenset(), (), False)
+            truth = deserved(solved, candidate, before, written) if written.lines else Deserved(frozenset(), (), False)
         except ContentError:
             return
         texts = tuple(written.lines)
@@ -192,12 +192,13 @@ def arithmetic(variants: int, seed: str = "arithmetic") -> tuple[Rate, Rate]:
 def _arithmetic_loss(solved: Solved, erred: Target) -> set[str]:
     line = next(at for at, step in enumerate(solved.steps) if step.target == erred)
     here = [point for point in solved.points if point.line == line]
-    values = {point.code for point in here if point.aspect == "value"}
-    if here:
-        return values
     later = [point for point in solved.points if point.line > line]
+    lost = {point.code for point in later if not point.follow_through}
+    if here:
+        return lost | {point.code for point in here if point.aspect == "value"}
     nearest = [point for point in later if point.line == min(each.line for each in later)]
-    return {next((point.code for point in nearest if point.aspect == "value"), nearest[0].code)} if nearest else set()
+    hit = next((point.code for point in nearest if point.aspect == "value"), nearest[0].code if nearest else "")
+    return lost | ({hit} if hit else set())
 
 
 class Careless(Candidate):
