@@ -38,7 +38,7 @@ class Judge:
 
     def __init__(self, of: RecalledSet) -> None:
         self.set = of
-        self._roots: dict[tuple[int, str], _Node] = {}
+        self._roots: dict[tuple[object, ...], _Node] = {}
         self._remembered = 0
 
     def paper(self, paper: PaperToMark, answers: Mapping[str, tuple[str, ...]]) -> tuple[Judgement, ...]:
@@ -65,7 +65,8 @@ class Judge:
         if self._remembered > MOST_REMEMBERED:
             self._roots.clear()
             self._remembered = 0
-        key = (id(question), question[0][0] if question else "")
+        # Variants that differ in what no part rests on have the same parts: the set keeps them, so ids do not change.
+        key = tuple([(label, *map(id, alternatives)) for label, alternatives in question])
         if key not in self._roots:
             self._roots[key] = _Node(Own(), {})
         return self._roots[key]

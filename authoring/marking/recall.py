@@ -12,11 +12,12 @@ from authoring.marking.explaining import Terms
 from authoring.marking.judge import Policy
 from authoring.papers.assemble import ROUND, turns
 from authoring.papers.pools import pool
-from authoring.papers.questions import Question, question
+from authoring.papers.questions import Kept, Question, question
 from authoring.papers.questions import Terms as Asked
 from authoring.papers.record import read_record
 from authoring.papers.variants import Variant
 from authoring.papers.views import value_text
+from authoring.specs.draws import rests_on
 from authoring.specs.item import Item, item_from
 from authoring.specs.plan import Plan, plan_from
 from authoring.specs.yaml_tree import parse_tree
@@ -54,6 +55,8 @@ class RecalledSet:
         self._places = {paper["code"]: at for at, paper in enumerate(data["papers"])}
         self._made: dict[tuple[str, tuple[tuple[str, str], ...], int, int], QuestionToMark] = {}
         self._papers: dict[str, PaperToMark] = {}
+        self._kept: dict[int, Kept] = {}
+        self._drawn: dict[tuple[object, ...], dict[str, object]] = {}
 
     @property
     def set_id(self) -> str:
@@ -76,14 +79,30 @@ class RecalledSet:
 
     def _question(self, entry: Mapping[str, Any], number: int, place: int) -> QuestionToMark:
         item = self.plan.items[number]
-        variables = tuple(sorted(entry["variables"].items()))
-        variant = _variant(item, entry["variables"], self.plan)
-        turn = place % ROUND if turns(variant) else 0
-        key = (item.name, variables, turn, number)
+        # What turns with the place of a paper comes round; most questions do not turn at all.
+        key = (item.name, tuple(entry["variables"].items()), place % ROUND, number)
         if key not in self._made:
-            asked = question(variant, Asked(self.plan.practice, self.plan.slips, self.plan.figures), turn)
+            variant = self._variant(item, entry["variables"])
+            turn = place % ROUND if turns(variant) else 0
+            kept = self._kept.setdefault(number, Kept())
+            asked = question(variant, Asked(self.plan.practice, self.plan.slips, self.plan.figures), turn, kept)
             self._made[key] = labelled(asked, number + 1)
         return self._made[key]
+
+    def _variant(self, item: Item, variables: Mapping[str, str]) -> Variant:
+        """The variant with these recorded values: each is found again in its pool."""
+        bindings: dict[str, object] = {}
+        before: tuple[str, ...] = ()
+        for name, draw in item.draws.items():
+            wanted = variables[name]
+            key = (item.name, name, *before) if rests_on(draw) else (item.name, name)
+            if key not in self._drawn:
+                self._drawn[key] = {value_text(each): each for each in pool(draw, bindings, self.plan.practice)}
+            if wanted not in self._drawn[key]:
+                raise UsageError(f"the record says {name} = {wanted} for {item.name}, which the item does not allow")
+            bindings[name] = self._drawn[key][wanted]
+            before = (*before, wanted)
+        return Variant(item, tuple(bindings.items()))
 
 
 def labelled(asked: Question, number: int) -> QuestionToMark:
@@ -121,15 +140,3 @@ def _plan(data: Mapping[str, Any], place: str) -> Plan:
         item_named,
         lambda word: parse_tree(texts["slips"], f"{place}: slips"),
     )
-
-
-def _variant(item: Item, variables: Mapping[str, str], plan: Plan) -> Variant:
-    """The variant with these recorded values: each is found again in its pool."""
-    bindings: dict[str, object] = {}
-    for name, draw in item.draws.items():
-        wanted = variables[name]
-        found = [value for value in pool(draw, bindings, plan.practice) if value_text(value) == wanted]
-        if not found:
-            raise UsageError(f"the record says {name} = {wanted} for {item.name}, which the item does not allow")
-        bindings[name] = found[0]
-    return Variant(item, tuple(bindings.items()))
