@@ -182,7 +182,9 @@ class Candidate:
         label = names.get(step.target.quantity) or to_text(step.line.chain.first)
         if several:
             electrons = step.target.electron is not None
-            label += f"({(step.target.electron or step.target.species).label if electrons else step.target.species.label})"
+            label += (
+                f"({(step.target.electron or step.target.species).label if electrons else step.target.species.label})"
+            )
         return label
 
     def _statement(self, step: Step, final: bool) -> str:
@@ -199,7 +201,9 @@ class Candidate:
                 return text.replace(",", "").replace("^", "").replace(" ", "")
             return text if how != "raised" else to_text(step.line.chain).partition(": ")[2]
         cross = self.style.cross
-        return ", ".join(f"{each.count} {cross} {each.coefficient}" for each in value if each.count and each.coefficient)
+        return ", ".join(
+            f"{each.count} {cross} {each.coefficient}" for each in value if each.count and each.coefficient
+        )
 
     def _superscripts(self, text: str) -> str:
         up = str.maketrans("0123456789", "⁰¹²³⁴⁵⁶⁷⁸⁹")
@@ -262,7 +266,9 @@ class Candidate:
         unit = line.unit
         number = self._rounded(step)
         if self.style.units == "kJ/mol" and unit == "eV":
-            number, unit = to_figures(EXACT.multiply(value, PER_MOLE), 4), "kJ/mol"
+            # As many figures as the key's: whoever takes differences later needs them.
+            figures = max(4, len(number.as_tuple().digits))
+            number, unit = to_figures(EXACT.multiply(value, PER_MOLE), figures), "kJ/mol"
         if self.style.units == "none":
             unit = ""
         text = typeset(shown(number), self.style)
@@ -318,9 +324,7 @@ class Candidate:
         label = to_text(quantity(solved.quantity).symbol)
         label = self.style.z if label == "Z_eff" else label
         rounding = quantity(solved.quantity).rounding
-        text = " < ".join(
-            f"{label}({name}) = {shown(rounding.apply(value))} {unit}".rstrip() for value, name in pairs
-        )
+        text = " < ".join(f"{label}({name}) = {shown(rounding.apply(value))} {unit}".rstrip() for value, name in pairs)
         joined = answer if isinstance(answer, str) else f" {'<' if '<' in solved.answer.shown else '>'} ".join(answer)
         if self.style.one_line and solved.task == "decide":
             return [f"{typeset(text, self.style)} → {joined}"]
@@ -365,8 +369,7 @@ class Candidate:
     def _write_as_key(self, solved: Solved) -> Written:
         """Parts that this simulator answers as the key does, in its own typography."""
         if solved.task == "read":
-            text = shown(solved.answer.value) if isinstance(solved.answer.value, Decimal) else solved.answer.shown
-            return Written([typeset(f"{text} {solved.answer.unit}".strip(), self.style)])
+            return Written([typeset(f"{solved.answer.shown} {solved.answer.unit}".strip(), self.style)])
         keep = {step.target: step.line.value for step in solved.steps if step.target.quantity in quantities()}
         self.own.update(keep)
         if solved.task == "identify":

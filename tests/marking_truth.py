@@ -9,6 +9,8 @@ from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 
+from marking_help import LOST, Candidate, S, Written
+
 from authoring.faults import ContentError
 from authoring.papers.questions import Question, Terms, question
 from authoring.papers.variants import enumerated
@@ -19,7 +21,6 @@ from authoring.slips.catalogue import Slip, applied, shipped
 from authoring.specs.item import read_item
 from authoring.specs.shipped import shipped_folder, shipped_names
 from authoring.tasks.solved import Solved
-from marking_help import LOST, S, Candidate, Written
 
 PUBLISHED = published()
 TERMS = Terms(PUBLISHED, shipped())
@@ -72,12 +73,17 @@ def deserved(solved: Solved, candidate: Candidate, before: Mapping[Target, Value
             continue
         if not _deviates(target, candidate):
             if _rests_on_wrong(target, candidate):
-                lost |= {p.code for p in solved.points if p.line == at and p.aspect not in ("choice", "reason")
-                         and not p.follow_through}
+                lost |= {
+                    p.code
+                    for p in solved.points
+                    if p.line == at and p.aspect not in ("choice", "reason") and not p.follow_through
+                }
             continue
         if target not in written.shows and _leaves_no_trace(solved, at, candidate):
             continue
-        if quantity(target.quantity).numeric and _shown(target, candidate.value(target)) == _shown(target, step.line.value):
+        if quantity(target.quantity).numeric and _shown(target, candidate.value(target)) == _shown(
+            target, step.line.value
+        ):
             by_luck = True
         deviating.append(target)
         if at in pointed:
@@ -218,7 +224,9 @@ def same(one: Signature | None, other: Signature | None) -> bool:
     """Whether two signatures look alike: values one unit in the last of their figures apart do."""
     if one is None or other is None or len(one) != len(other):
         return False
-    return all(mine == theirs or _near(target, mine, theirs) for (target, mine), (_, theirs) in zip(one, other, strict=True))
+    return all(
+        mine == theirs or _near(target, mine, theirs) for (target, mine), (_, theirs) in zip(one, other, strict=True)
+    )
 
 
 def _near(target: Target, mine: object, theirs: object) -> bool:

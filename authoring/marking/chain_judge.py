@@ -12,6 +12,7 @@ from authoring.marking.forms import Written
 from authoring.marking.judgement import Own
 from authoring.marking.tallies import same_tally
 from authoring.marking.trace import Known, Traced, frontier, traced
+from authoring.marking.units import in_key_unit
 from authoring.shielding.quantity import Target, Value, quantities, quantity
 from authoring.shielding.screening import Group
 from authoring.shielding.solve import Step, evaluate
@@ -230,6 +231,11 @@ def _members(group: Group) -> frozenset[tuple[int, int]]:
 def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -> None:
     candidates = list(_open_lines(working, _names_for(written), written))
     candidates = [at for at in candidates if quantity(working.solved.steps[at].target.quantity).numeric]
+    if written.unit and written.value is not None:
+        units = {at: working.solved.steps[at].line.unit for at in candidates}
+        candidates = [
+            at for at in candidates if not in_key_unit(written.value, written.unit, units[at])[1]
+        ] or candidates
     found: list[tuple[int, Explained]] = []
     for at in candidates:
         step = working.solved.steps[at]
@@ -253,11 +259,24 @@ def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -
     if best.finding == "open":
         at = candidates[-1]
         best = dict(found)[at]
+    if _said_before(working, at, written):
+        return
     unit = working.solved.steps[at].line.unit
     if unit and not written.unit and best.finding in (*GOOD, "slip"):
         working.remarks.append(f"{written.text[:60]}: the unit is missing; it is {unit}")
     _note_subtrahend(working, at, written, terms)
     _note(working, at, best, terms)
+
+
+def _said_before(working: Working, at: int, written: Written) -> bool:
+    """Whether a bare value only repeats what its line has said (in a comparison, say)."""
+    target = working.solved.steps[at].target
+    had = working.own.values.get(target)
+    if not working.states[at].stated or written.value is None or not isinstance(had, Decimal):
+        return False
+    return all(member.shown or member.value is None for member in written.members) and agrees(
+        had, written.value, target
+    )
 
 
 def _names_for(written: Written) -> set[str]:

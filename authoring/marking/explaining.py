@@ -16,7 +16,7 @@ from authoring.faults import ContentError
 from authoring.marking.forms import Member, Written
 from authoring.marking.tallies import looks_like_tally, same_tally
 from authoring.marking.trace import Known, Traced, frontier, traced
-from authoring.marking.units import in_key_unit
+from authoring.marking.units import fewer_figures, in_key_unit, with_figures
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantity import Target, Value, quantity
 from authoring.shielding.solve import evaluate
@@ -86,19 +86,39 @@ def explained(
     if written.value is None:
         return Explained("open", None, words="no value is stated")
     value, trouble = in_key_unit(written.value, written.unit, unit)
+    if not trouble and written.unit and value != written.value:
+        rounding = Rounding(figures=len(value.as_tuple().digits))  # as many as it had in its own unit
     own = {each: had for each, had in own.items() if each != target}
     known = frontier(target, terms.practice, own)
     found = _by_terms(target, written, known, terms)
     if found is None:
         found = _of_value(target, value, known, key, rounding, terms)
+        if found.finding == "open" and unit:
+            found, value = _of_fewer_figures(found, value, written.value, target, known, key, terms)
         if found.finding not in GOOD:
-            found = _as_meant(found, written, value, unit, lambda meant: _of_value(target, meant, known, key, None, terms))
+
+            def of_meant(meant: Decimal) -> Explained:
+                return _of_value(target, meant, known, key, None, terms)
+
+            found = _as_meant(found, written, value, unit, of_meant)
     elif not _comes_to(found.trace[-1].value, value):
         words = f"the arithmetic: the terms come to {_short(found.trace[-1].value)}, not {_short(value)}"
         return _miscalculated(found, value, words)
     if found.finding in ("right", "early") and trouble:
         return Explained("unit", value, found.trace, words=trouble)
     return replace(found, value=_kept(found, value))
+
+
+def _of_fewer_figures(
+    found: Explained, value: Decimal, given: Decimal, target: Target, known: Known, key: Value, terms: Terms
+) -> tuple[Explained, Decimal]:
+    """A whole number whose last zeros only fill places, if that explains it: `−99100 kJ/mol`."""
+    for figures in fewer_figures(given):
+        rounded = with_figures(value, figures)
+        other = _of_value(target, rounded, known, key, Rounding(figures=figures), terms)
+        if other.finding in (*GOOD, "slip"):
+            return other, rounded
+    return found, value
 
 
 def _as_meant(

@@ -20,7 +20,7 @@ from authoring.working.nodes import Num, Product, Words
 
 SPECIES = r"[A-Z][a-z]?(?: ?\(?[0-9]{0,2}[+-]\)?)?"
 ELECTRON = r"[1-8][spdf]"
-_CHOICE = re.compile(r"(?:\(([A-Ha-h])\)|([A-H])[.)]?|([a-h])[.)]?)")
+_CHOICE = re.compile(r"(?:[Oo]ption |[Aa]nswer )?(?:\(([A-Ha-h])\)|([A-H])[.)]?|([a-h])[.)]?)")
 _ELECTRON = re.compile(rf"\(?({ELECTRON})\)?(?: ?(?:electrons?|orbital|subshell))?\.?")
 _SPECIES = re.compile(rf"({SPECIES})\.?")
 _PREFIX = re.compile(

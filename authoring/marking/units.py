@@ -44,12 +44,21 @@ def in_key_unit(value: Decimal, written: str, key: str) -> tuple[Decimal, str]:
 
 def _as_precise(converted: Decimal, given: Decimal) -> Decimal:
     """A converted value with as many significant figures as were given."""
+    return with_figures(converted, len(given.as_tuple().digits))
+
+
+def with_figures(value: Decimal, figures: int) -> Decimal:
+    """A value cut to significant figures, where it is not zero and of a sensible size."""
+    if not value:
+        return value
+    places = figures - 1 - value.adjusted()
+    return value.quantize(Decimal(1).scaleb(-places), context=EXACT) if abs(places) < 25 else value
+
+
+def fewer_figures(given: Decimal) -> tuple[int, ...]:
+    """How many figures a whole number may have been given to: the zeros at its end may only fill places."""
     _, digits, exponent = given.as_tuple()
-    figures = len(digits)
-    if exponent == 0:
-        # The zeros that end a whole number only fill places: −87600 has three figures, or nobody can tell.
-        figures = max(FEWEST, len("".join(map(str, digits)).rstrip("0")))
-    if not converted:
-        return converted
-    places = figures - 1 - converted.adjusted()
-    return converted.quantize(Decimal(1).scaleb(-places), context=EXACT) if abs(places) < 25 else converted
+    kept = len("".join(map(str, digits)).rstrip("0"))
+    if exponent != 0 or kept == len(digits):
+        return ()
+    return tuple(dict.fromkeys(each for each in (kept + 1, kept) if FEWEST <= each < len(digits)))

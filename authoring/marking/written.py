@@ -79,8 +79,9 @@ def _quick_again(plain: str, decimal: DecimalMark) -> Written | None:
 
 def _read_plain(plain: str, decimal: DecimalMark) -> Written:
     worded = has_words(plain)
-    if several := _several(plain, decimal):
-        return several
+    # These two have many raised figures, and bounds of their own.
+    if found := read_groups(plain) or read_configuration(plain) or _several(plain, decimal):
+        return found
     try:
         check_bounds(plain)
     except Unreadable as error:
@@ -89,11 +90,7 @@ def _read_plain(plain: str, decimal: DecimalMark) -> Written:
     def read(piece: str) -> Written | None:
         return _statement(piece, decimal) or read_chain(piece, decimal)
 
-    found = (
-        _statement(plain, decimal)
-        or (read_worded(plain, read) if worded else None)
-        or read_chain(plain, decimal)
-    )
+    found = _statement(plain, decimal) or (read_worded(plain, read) if worded else None) or read_chain(plain, decimal)
     if found is not None:
         return found
     return as_words(plain) if worded else Written(plain, "unreadable", remark="this could not be read")
@@ -112,12 +109,13 @@ def _statement(plain: str, decimal: DecimalMark) -> Written | None:
 
 def _one_of_several(piece: str, decimal: DecimalMark) -> Written | None:
     """A configuration, groups, or an equation."""
-    try:
-        check_bounds(piece)
-    except Unreadable:
-        return None
     about, rest = split_about(piece)
     found = read_groups(rest) or read_configuration(rest)
+    try:
+        check_bounds("" if found else piece)
+    except Unreadable:
+        return None
+    found = found or read_tally(rest, decimal)
     if found is None and has_words(rest):
         found = read_worded(rest, lambda core: read_chain(core, decimal))
     found = found or read_chain(rest, decimal)
@@ -131,7 +129,9 @@ def _several(plain: str, decimal: DecimalMark) -> Written | None:
         return None
     read = [_one_of_several(piece, decimal) for piece in pieces if piece]
     found = tuple(each for each in read if each is not None)
-    if len(found) != len(read) or not any(each.kind != "chain" or each.label for each in found):
+    if len(found) != len(read) or all(
+        each.kind == "tally" or (each.kind == "chain" and not each.label) for each in found
+    ):
         return None
     if sum(each.kind == "chain" and each.label is None for each in found) > 1:
         return None

@@ -8,7 +8,6 @@ from __future__ import annotations
 import argparse
 import random
 import sys
-from collections import Counter
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 from decimal import Decimal
@@ -16,6 +15,9 @@ from pathlib import Path
 
 if __name__ == "__main__":
     sys.path[:0] = [str(Path(__file__).parents[1]), str(Path(__file__).parents[2])]
+
+from marking_help import Z_EFF, Candidate, S, Style, Written, styled
+from marking_truth import Deserved, bank, can_tell, deserved, solved_parts, touching
 
 from authoring.faults import ContentError
 from authoring.marking.explaining import Terms
@@ -26,8 +28,6 @@ from authoring.shielding.practice import published
 from authoring.shielding.quantity import Target, Value
 from authoring.slips.catalogue import Slip, applied, compatible, shipped
 from authoring.tasks.solved import Solved
-from marking_help import S, Z_EFF, Candidate, Style, Written, styled
-from marking_truth import Deserved, bank, can_tell, deserved, solved_parts, touching
 
 PUBLISHED = published()
 TERMS = Terms(PUBLISHED, shipped())
@@ -247,10 +247,11 @@ class Careless(Candidate):
         return right + (Decimal("1.00") if how == "carry" else Decimal("0.10"))
 
     def _erred_line(self, step: object) -> str:
+        from marking_help import typeset
+
         from authoring.shielding.solve import work
         from authoring.working.numbers import shown
         from authoring.working.text import to_text
-        from marking_help import typeset
 
         target = step.target  # type: ignore[attr-defined]
         label = self.style.s if target.quantity == S else self.style.z
