@@ -62,6 +62,7 @@ class LineState:
     rivals: tuple[str, ...] = ()
     words: str = ""
     sure: bool = True
+    by: int = -1  # the stated line that implies this one, where it is not stated itself
 
 
 @dataclass(slots=True)
@@ -240,6 +241,9 @@ def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -
     for at in candidates:
         step = working.solved.steps[at]
         own = _with_subtrahend(working, step, written, terms)
+        if again := _implied_by(working, at):
+            implied = {working.solved.steps[index].target for index in again}
+            own = {target: value for target, value in own.items() if target not in implied}
         found.append(
             (
                 at,
@@ -378,6 +382,9 @@ def _names_a_thing(word: str) -> bool:
 def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
     """Enter a finding for a line, and for the lines before it that it took along."""
     own = working.own
+    for implied in _implied_by(working, at):
+        own.drop(working.solved.steps[implied].target)
+        working.states[implied] = LineState()
     had = set(own.values)
     places = {step.target: index for index, step in enumerate(working.solved.steps)}
     slips = tuple(slip.name for slip in found.slips)
@@ -397,6 +404,7 @@ def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
             rivals if each.spoiled else (),
             found.words if each.spoiled else "",
             found.sure or not each.spoiled,
+            at,
         )
         own.set(each.target, each.value, each.value != evaluate(each.target, terms.practice))
     before = any(each.spoiled for each in found.trace[:-1] if each.target not in places and each.target not in had)
@@ -417,6 +425,11 @@ def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
     if found.value is not None:
         key = working.solved.steps[at].line.value
         own.set(target, found.value, not _as_key(found, key))
+
+
+def _implied_by(working: Working, at: int) -> list[int]:
+    """The lines that nothing but what was said before on this line implies."""
+    return [index for index, state in enumerate(working.states) if state.by == at and not state.stated]
 
 
 def _as_key(found: Explained, key: Value) -> bool:

@@ -28,6 +28,8 @@ from authoring.working.text import to_text
 _LINE_NUMBER = re.compile(
     r"^\W*(?:first wrong line|wrong line|line|zeile|l\.?)?\s*[:(]?\s*(\d{1,2})\b[):.;,\s-]*", re.IGNORECASE
 )
+# `3, S = 19.70`: the space tells the number of a line from a decimal comma.
+_SET_APART = re.compile(r"\W*\d{1,2}\s*[,:)]\s+\S")
 _BLANK_LABEL = re.compile(r"^\s*\(?([ivxl]{1,6})[).:]+\s*", re.IGNORECASE)
 
 _ONE_TYPE = str.maketrans({",": ".", "{": None, "}": None, "x": "*"})
@@ -308,7 +310,9 @@ def _line_number(lines: Sequence[Written], policy: Policy) -> tuple[int | None, 
     for written in lines:
         for piece in _statements(written.text) if number is None else [written.text]:
             match = _LINE_NUMBER.match(piece) if number is None else None
-            named = match is not None and (match[0].strip(" :(;,.-)") != match[1] or not piece[match.end() :].strip())
+            named = match is not None and (
+                match[0].strip(" :(;,.-)") != match[1] or not piece[match.end() :].strip() or _SET_APART.match(piece)
+            )
             if match is not None and named:
                 number = int(match[1])
                 piece = piece[match.end() :].strip(" ;:,.")

@@ -89,6 +89,11 @@ class Own:
         else:
             self.off.discard(target)
 
+    def drop(self, target: Target) -> None:
+        """Forget a value that was only implied by what the candidate has put right since."""
+        self.values.pop(target, None)
+        self.off.discard(target)
+
     def deviations(self) -> tuple[tuple[Target, Value], ...]:
         """The values that are not the key's: with the key they say all about the state."""
         return tuple((target, self.values[target]) for target in self.values if target in self.off)

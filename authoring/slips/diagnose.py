@@ -115,7 +115,7 @@ def _right_shown(target: Target, practice: Practice, known: Known, rounding: Rou
     return None if right is None else printed(target, right, practice, known, rounding)
 
 
-@functools.lru_cache(maxsize=1024)
+@functools.lru_cache(maxsize=8192)
 def slip_values(
     target: Target,
     practice: Practice,

@@ -112,7 +112,7 @@ def combinations(slips: Combination, most: int) -> tuple[tuple[int, Combination]
     return tuple(found)
 
 
-@functools.lru_cache(maxsize=1024)
+@functools.lru_cache(maxsize=8192)
 def outcomes(target: Target, practice: Practice, known: Known, slips: Slips, most: int) -> tuple[Outcome, ...]:
     """What every slip and compatible combination makes of a target, likeliest first.
 
@@ -143,7 +143,7 @@ def _one_fewer(chosen: int) -> Iterator[int]:
         left ^= lowest
 
 
-@functools.lru_cache(maxsize=1024)
+@functools.lru_cache(maxsize=8192)
 def by_answer(
     target: Target, practice: Practice, known: Known, slips: Slips, most: int
 ) -> Mapping[Value, tuple[Combination, ...]]:
