@@ -176,7 +176,10 @@ def arithmetic(variants: int, seed: str = "arithmetic") -> tuple[Rate, Rate]:
             if solved.task != "calculate" or solved.answer.kind != "number":
                 continue
             candidate.erred = None
-            written = candidate.write(solved)
+            try:
+                written = candidate.write(solved)
+            except ContentError:
+                break  # the error leaves no charge that could hold an electron: nobody goes on from there
             found = judged(f"1{'abcdef'[at]}", solved, tuple(written.lines), own, TERMS, policy)
             if candidate.erred is None:
                 continue
