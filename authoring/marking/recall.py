@@ -56,6 +56,7 @@ class RecalledSet:
         self._made: dict[tuple[str, tuple[tuple[str, str], ...], int, int], QuestionToMark] = {}
         self._papers: dict[str, PaperToMark] = {}
         self._kept: dict[int, Kept] = {}
+        self._turning: dict[int, bool] = {}
         self._drawn: dict[tuple[object, ...], dict[str, object]] = {}
 
     @property
@@ -79,11 +80,12 @@ class RecalledSet:
 
     def _question(self, entry: Mapping[str, Any], number: int, place: int) -> QuestionToMark:
         item = self.plan.items[number]
-        # What turns with the place of a paper comes round; most questions do not turn at all.
-        key = (item.name, tuple(entry["variables"].items()), place % ROUND, number)
+        if number not in self._turning:
+            self._turning[number] = turns(self._variant(item, entry["variables"]))
+        turn = place % ROUND if self._turning[number] else 0
+        key = (item.name, tuple(entry["variables"].items()), turn, number)
         if key not in self._made:
             variant = self._variant(item, entry["variables"])
-            turn = place % ROUND if turns(variant) else 0
             kept = self._kept.setdefault(number, Kept())
             asked = question(variant, Asked(self.plan.practice, self.plan.slips, self.plan.figures), turn, kept)
             self._made[key] = labelled(asked, number + 1)
