@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import functools
 import re
 from decimal import Decimal
 
@@ -104,6 +105,7 @@ def read_chain(text: str, decimal: DecimalMark) -> Written | None:
     return finished(text, tuple(members), "; ".join(remarks))
 
 
+@functools.lru_cache(maxsize=50_000)
 def _member(piece: str, relation: str) -> tuple[Member, str | None]:
     try:
         node = parse_expression(piece)

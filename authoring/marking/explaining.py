@@ -14,7 +14,7 @@ from typing import Literal
 
 from authoring.faults import ContentError
 from authoring.marking.forms import Member, Written
-from authoring.marking.tallies import looks_like_tally, same_tally
+from authoring.marking.tallies import Key, keys_of_shares, keys_of_terms, looks_like_tally
 from authoring.marking.trace import Known, Traced, frontier, traced
 from authoring.marking.units import fewer_figures, in_key_unit, with_figures
 from authoring.shielding.practice import Practice
@@ -177,18 +177,19 @@ def _by_terms(target: Target, written: Written, known: Known, terms: Terms) -> E
     shown = tally_shown(written)
     if shown is None:
         return None
-    for slips in tallying(target, terms):
-        try:
-            trace = traced(target, terms.practice, known, slips)
-        except ContentError:
-            continue
-        tally = next((each for each in trace if each.target.quantity == "tally"), None)
-        if tally is not None and same_tally(shown.terms, tally.value):
-            rivals = _same_terms(target, slips, shown, known, terms) if slips else ()
-            if not slips:
-                return Explained("right", trace[-1].value, trace)
-            return Explained("slip", trace[-1].value, trace, slips, rivals, slips[0].did, sure=not rivals)
-    return None
+    counts, products = keys_of_terms(shown.terms)
+    fitting = [
+        (slips, trace)
+        for slips, trace, keys in tallies_under(target, terms, known)
+        if counts == keys[0] or products == keys[1]
+    ]
+    if not fitting:
+        return None
+    slips, trace = fitting[0]
+    if not slips:
+        return Explained("right", trace[-1].value, trace)
+    rivals = tuple(others for others, _ in fitting[1:])
+    return Explained("slip", trace[-1].value, trace, slips, rivals, slips[0].did, sure=not rivals)
 
 
 def tally_shown(written: Written) -> Member | None:
@@ -200,26 +201,21 @@ def tally_shown(written: Written) -> Member | None:
 
 
 @lru_cache(maxsize=8192)
-def tallying(target: Target, terms: Terms) -> tuple[tuple[Slip, ...], ...]:
-    """No slip, then single slips that can touch the tally, likeliest first."""
-    touching = terms.slips.touching(target.to("tally"))
-    return ((), *((slip,) for slip in sorted(touching, key=lambda slip: -slip.likelihood)))
-
-
-def _same_terms(
-    target: Target, slips: tuple[Slip, ...], shown: Member, known: Known, terms: Terms
-) -> tuple[tuple[Slip, ...], ...]:
+def tallies_under(
+    target: Target, terms: Terms, known: Known
+) -> tuple[tuple[tuple[Slip, ...], tuple[Traced, ...], tuple[Key, Key]], ...]:
+    """The way to a screening constant without a slip, then under each single slip that can touch its tally, likeliest
+    first, with what tells its tally."""
+    touching = sorted(terms.slips.touching(target.to("tally")), key=lambda slip: -slip.likelihood)
     found = []
-    for other in tallying(target, terms):
-        if not other or other == slips:
-            continue
+    for slips in ((), *((slip,) for slip in touching)):
         try:
-            trace = traced(target, terms.practice, known, other)
+            trace = traced(target, terms.practice, known, slips)
         except ContentError:
             continue
         tally = next((each for each in trace if each.target.quantity == "tally"), None)
-        if tally is not None and same_tally(shown.terms, tally.value):
-            found.append(other)
+        if tally is not None:
+            found.append((slips, trace, keys_of_shares(tally.value)))
     return tuple(found)
 
 

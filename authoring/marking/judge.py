@@ -34,6 +34,9 @@ _BLANK_LABEL = re.compile(r"^\s*\(?([ivxl]{1,6})[).:]+\s*", re.IGNORECASE)
 
 _ONE_TYPE = str.maketrans({",": ".", "{": None, "}": None, "x": "*"})
 
+MOST_PRINTED = 5000
+_PRINTED: dict[int, tuple[Solved, dict[str, int]]] = {}
+
 Texts = tuple[str, ...]
 
 
@@ -142,7 +145,7 @@ def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tup
         if not any(sign in written.text for sign in "=:→≈"):
             others.append(written)
             continue
-        printed = printed or {_plain(to_text(step.line.chain)): at for at, step in enumerate(solved.steps)}
+        printed = printed or _printed(solved)
         text = written.text.replace(",", ".") if policy.decimal == "comma" else written.text
         at = printed.get(_plain(text))
         if at is None:
@@ -150,6 +153,17 @@ def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tup
         else:
             found.add(at)
     return found, others
+
+
+def _printed(solved: Solved) -> dict[str, int]:
+    """The lines of a key as text, each with its place; kept, since many scripts answer the same part."""
+    kept = _PRINTED.get(id(solved))
+    if kept is None or kept[0] is not solved:
+        if len(_PRINTED) > MOST_PRINTED:
+            _PRINTED.clear()
+        lines = {_plain(to_text(step.line.chain)): at for at, step in enumerate(solved.steps)}
+        kept = _PRINTED[id(solved)] = (solved, lines)
+    return kept[1]
 
 
 def _plain(text: str) -> str:

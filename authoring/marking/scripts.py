@@ -25,6 +25,7 @@ _PLAIN_LINE = re.compile(r"(?P<lead> *(?:- +)?)(?P<key>[A-Za-z0-9().]{1,12}) *:(
 _PLAIN_ITEM = re.compile(r" +- +(?P<text>.*?) *")
 # Faults that a sign of handwriting may be the reason of (`[Ar] 3d3`, `- 4.81`, `*`, `> 3`).
 _ONLY_SIGNS = frozenset(("yaml-syntax", "yaml-alias", "yaml-tag", "yaml-folded"))
+_QUOTED_LIST = re.compile(r"\[\s*[\"']")
 _COMMENT = re.compile(r"\s#.*$|^#.*$")
 
 
@@ -230,9 +231,10 @@ class _Gathered:
                 return self.block(index, key, value)
             return (WrittenText(value, place),)
         source = self.tree.at((index, key))
-        if source.text[source.column - 1 : source.column] in ("[", "{"):
+        written = source.text[source.column - 1 :]
+        if written[:1] in ("[", "{") and not _QUOTED_LIST.match(written):
             # `[Ar]` and `{2s,2p}` are YAML brackets only by accident; the candidate's line is what stands there.
-            return (WrittenText(_COMMENT.sub("", source.text[source.column - 1 :]).strip(), place),)
+            return (WrittenText(_COMMENT.sub("", written).strip(), place),)
         if isinstance(value, list) and all(isinstance(line, str) for line in value) and len(value) <= _MOST_LINES:
             return tuple(WrittenText(line, self.place(index, key, at)) for at, line in enumerate(value))
         message = f"part {key}: a line, or a list of at most {_MOST_LINES} lines"

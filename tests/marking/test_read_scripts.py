@@ -243,3 +243,9 @@ def test_no_table_stops_the_reader(text: str) -> None:
 
     found = parse_table(text, "answers.csv")
     assert all(fault.source is not None for fault in found.faults)
+
+
+def test_a_list_of_quoted_lines_on_one_line_is_a_list() -> None:
+    """Brackets before a quotation mark are YAML's; before a noble gas they are the candidate's."""
+    found = parse_scripts('- paper: K7QD2\n  a: ["S = 19.70", "3.30"]\n- paper: M31TX\n  a: [Ar] 3d3 4s2\n', "pile.yaml")
+    assert [answers(script) for script in found.scripts] == [{"a": ["S = 19.70", "3.30"]}, {"a": ["[Ar] 3d3 4s2"]}]
