@@ -247,5 +247,6 @@ def test_no_table_stops_the_reader(text: str) -> None:
 
 def test_a_list_of_quoted_lines_on_one_line_is_a_list() -> None:
     """Brackets before a quotation mark are YAML's; before a noble gas they are the candidate's."""
-    found = parse_scripts('- paper: K7QD2\n  a: ["S = 19.70", "3.30"]\n- paper: M31TX\n  a: [Ar] 3d3 4s2\n', "pile.yaml")
+    text = '- paper: K7QD2\n  a: ["S = 19.70", "3.30"]\n- paper: M31TX\n  a: [Ar] 3d3 4s2\n'
+    found = parse_scripts(text, "pile.yaml")
     assert [answers(script) for script in found.scripts] == [{"a": ["S = 19.70", "3.30"]}, {"a": ["[Ar] 3d3 4s2"]}]
