@@ -10,8 +10,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from authoring.marking.chain_judge import LineState, Working
 from authoring.marking.judgement import Certainty, PointJudged, least
+from authoring.marking.line_states import LineState, Working
+from authoring.tasks.points import charged
 from authoring.working.lines import Point
 
 ACCURACY_ONLY = "accuracy only"
@@ -38,15 +39,15 @@ def awarded(
 ) -> tuple[tuple[PointJudged, ...], Certainty]:
     """The points of a part, and how sure they are."""
     points = working.solved.points
-    charged = _charged(points, working.states)
+    lost = _charged(points, working.states)
     judged = []
     for point in points:
         if chosen is not None and (point.aspect in ("choice", "reason") or working.solved.task == "read"):
             judged.append(_of_choice(point, chosen, any_words))
             continue
         state = working.states[point.line] if point.line < len(working.states) else LineState()
-        if point.code in charged:
-            judged.append(PointJudged(point.code, 0, charged[point.code]))
+        if point.code in lost:
+            judged.append(PointJudged(point.code, 0, lost[point.code]))
         else:
             judged.append(_of_line(point, state, policy))
     return tuple(judged), certainty_of(working, chosen, judged)
@@ -78,9 +79,7 @@ def _charged(points: Sequence[Point], states: Sequence[LineState]) -> dict[str, 
         mistake = state.spoiled or (state.stated and state.finding in ("arithmetic", "unit"))
         if not mistake or at in pointed:
             continue
-        later = [point for point in points if point.line > at and point.aspect not in ("choice", "reason")]
-        following = [point for point in later if point.line == min(each.line for each in later)]
-        hit = next((point for point in following if point.aspect == "value"), following[0] if following else None)
+        hit = charged(points, at)
         if hit is not None:
             lost.setdefault(hit.code, f"a line before: {state.words}" if state.words else "a line before is wrong")
     return lost

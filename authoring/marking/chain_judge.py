@@ -2,22 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, field
+from collections.abc import Sequence
 from decimal import Decimal
 
 from authoring.faults import ContentError
 from authoring.marking.explaining import GOOD, RANK, Explained, Terms, explained
+from authoring.marking.explaining_statements import explained_statement, same
 from authoring.marking.forms import Written
 from authoring.marking.judgement import Own
-from authoring.marking.tallies import same_tally
-from authoring.marking.trace import Known, Traced, frontier, traced
+from authoring.marking.line_states import LineState, Working, implied_by, note, open_lines
+from authoring.marking.trace import frontier, traced
 from authoring.marking.units import in_key_unit
 from authoring.shielding.quantity import Target, Value, quantities, quantity
-from authoring.shielding.screening import Group
 from authoring.shielding.solve import Step, evaluate
 from authoring.slips.diagnose import agrees
-from authoring.slips.outcomes import Combination, outcomes
 from authoring.tasks.solved import Solved
 from authoring.working.numbers import Rounding
 
@@ -48,31 +46,6 @@ CONSTANTS = {"n*", "R", "N", "l", "a0", "a_0", "R_H", "Ry"}
 # A line that says anew what stands already is less likely than a new one with one slip, likelier than with two.
 RESTATED = 3.5
 SLIPPED = (RANK["slip"], 2)
-
-
-@dataclass(slots=True)
-class LineState:
-    """What was found for one line of the key."""
-
-    finding: str = "unseen"
-    stated: bool = False
-    follows: bool = False  # right on the candidate's own, wrong, earlier values
-    spoiled: bool = False
-    slips: tuple[str, ...] = ()
-    rivals: tuple[str, ...] = ()
-    words: str = ""
-    sure: bool = True
-    by: int = -1  # the stated line that implies this one, where it is not stated itself
-
-
-@dataclass(slots=True)
-class Working:
-    """The lines of a part with what was found for each, and the candidate's own values."""
-
-    solved: Solved
-    states: list[LineState]
-    own: Own
-    remarks: list[str] = field(default_factory=list)
 
 
 def read_working(solved: Solved, lines: Sequence[Written], own: Own, terms: Terms) -> Working:
@@ -119,7 +92,7 @@ def _fits_all(working: Working, name: str, terms: Terms) -> bool:
             value = traced(target, terms.practice, known, slip)[-1].value
         except ContentError:
             return False
-        if not (agrees(value, said[target], target) or _same(value, said[target])):
+        if not (agrees(value, said[target], target) or same(value, said[target])):
             return False
     return True
 
@@ -167,70 +140,19 @@ def _hold_statement(working: Working, written: Written, terms: Terms) -> None:
     }[written.kind]
     names: set[str] = {written.kind} if written.kind != "electron" else {"first electron lost"}
     found: list[tuple[int, Explained]] = []
-    for at in _open_lines(working, names, written):
+    for at in open_lines(working, names, written):
         step = working.solved.steps[at]
-        found.append((at, _explain_statement(step.target, value, working.own.values, terms)))
+        found.append((at, explained_statement(step.target, value, working.own.values, terms)))
     if found:
         at, best = min(found, key=lambda pair: (pair[1].rank, working.states[pair[0]].stated, pair[0]))
-        _note(working, at, best, terms)
-
-
-def _explain_statement(target: Target, value: object, own: dict[Target, Value], terms: Terms) -> Explained:
-    own = {each: had for each, had in own.items() if each != target}
-    known = frontier(target, terms.practice, own)
-    right = evaluate(target, terms.practice, dict(known))
-    if _same(right, value):
-        return Explained("right", right, traced(target, terms.practice, known, ()))
-    if _same(evaluate(target, terms.practice), value):
-        return Explained(
-            "key", evaluate(target, terms.practice), words="agrees with the key, though not with the line before"
-        )
-    for most in (1, 2):
-        hits = _hits(target, value, known, terms, most)
-        if hits:
-            slips, trace = hits[0]
-            rivals = tuple(others for others, _ in hits[1:])
-            words = " ".join(slip.did for slip in slips)
-            return Explained("slip", trace[-1].value, trace, slips, rivals, words, sure=not rivals and most == 1)
-    kept = value if target.quantity in ("configuration", "first electron lost") else None
-    return Explained("open", kept, words="no practice or slip in the catalogue explains this", sure=False)
-
-
-def _hits(
-    target: Target, value: object, known: Known, terms: Terms, size: int
-) -> list[tuple[Combination, tuple[Traced, ...]]]:
-    """The slips, or pairs of them, under which a statement is what the practice gives; likeliest first."""
-    hits = []
-    for outcome in outcomes(target, terms.practice, known, terms.slips, size):
-        if len(outcome.slips) == size and _same(outcome.answer, value):
-            hits.append((outcome.slips, traced(target, terms.practice, known, outcome.slips)))
-    return hits
-
-
-def _same(right: object, value: object) -> bool:
-    """Whether a statement says what the key says: groups as sets of members, tallies by their counts."""
-    if isinstance(right, tuple) and isinstance(value, tuple):
-        if right and hasattr(right[0], "coefficient"):
-            return same_tally(value, right)
-        return _grouping(right) == _grouping(value)
-    return type(right) is type(value) and right == value
-
-
-def _grouping(groups: tuple[object, ...]) -> frozenset[tuple[frozenset[tuple[int, int]], int]]:
-    """Groups without their order and without empty members: (4s,4p)2 and (4s)2 say the same."""
-    return frozenset((_members(group), group.electrons) for group in groups if isinstance(group, Group))
-
-
-def _members(group: Group) -> frozenset[tuple[int, int]]:
-    """The shell and l of a group's subshells, with s standing for s and p."""
-    return frozenset((each.n, 0 if each.l < 2 else each.l) for each in group.subshells)
+        note(working, at, best, terms)
 
 
 # --- numbers ---------------------------------------------------------------------------------------
 
 
 def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -> None:
-    candidates = list(_open_lines(working, _names_for(written), written))
+    candidates = list(open_lines(working, _names_for(written), written))
     candidates = [at for at in candidates if quantity(working.solved.steps[at].target.quantity).numeric]
     if written.unit and written.value is not None:
         units = {at: working.solved.steps[at].line.unit for at in candidates}
@@ -241,7 +163,7 @@ def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -
     for at in candidates:
         step = working.solved.steps[at]
         own = _with_subtrahend(working, step, written, terms)
-        if again := _implied_by(working, at):
+        if again := implied_by(working, at):
             implied = {working.solved.steps[index].target for index in again}
             own = {target: value for target, value in own.items() if target not in implied}
         found.append(
@@ -269,7 +191,7 @@ def _hold_number(working: Working, written: Written, terms: Terms, last: bool) -
     if unit and not written.unit and best.finding in (*GOOD, "slip"):
         working.remarks.append(f"{written.text[:60]}: the unit is missing; it is {unit}")
     _note_subtrahend(working, at, written, terms)
-    _note(working, at, best, terms)
+    note(working, at, best, terms)
 
 
 def _said_before(working: Working, at: int, written: Written) -> bool:
@@ -349,93 +271,6 @@ def _note_subtrahend(working: Working, at: int, written: Written, terms: Terms) 
     key = evaluate(need, terms.practice)
     found = explained(need, bare, known, key, None, "", terms)
     if line is not None:
-        _note(working, line, found, terms)
+        note(working, line, found, terms)
     else:
         working.own.set(need, found.value, found.value != key)
-
-
-# --- noting what was found -----------------------------------------------------------------------------
-
-
-def _open_lines(working: Working, names: set[str], written: Written) -> Iterator[int]:
-    """The lines of the key that a statement could be about, by quantity and by what the statement names."""
-    for at, step in enumerate(working.solved.steps):
-        target = step.target
-        if target.quantity in names and target.quantity in quantities() and _is_about(target, written.about):
-            yield at
-
-
-def _is_about(target: Target, about: str) -> bool:
-    if not about:
-        return True
-    words = about.replace(",", " ").split()
-    labels = {target.species.label, target.species.symbol if not target.species.charge else target.species.label}
-    if target.electron is not None:
-        labels.add(target.electron.label)
-    return all(word in labels for word in words) or not any(_names_a_thing(word) for word in words)
-
-
-def _names_a_thing(word: str) -> bool:
-    return word[:1].isupper() or (len(word) == 2 and word[0].isdigit())
-
-
-def _note(working: Working, at: int, found: Explained, terms: Terms) -> None:
-    """Enter a finding for a line, and for the lines before it that it took along."""
-    own = working.own
-    for implied in _implied_by(working, at):
-        own.drop(working.solved.steps[implied].target)
-        working.states[implied] = LineState()
-    had = set(own.values)
-    places = {step.target: index for index, step in enumerate(working.solved.steps)}
-    slips = tuple(slip.name for slip in found.slips)
-    rivals = tuple(" + ".join(slip.name for slip in each) for each in found.rivals)
-    target = working.solved.steps[at].target
-    for each in found.trace[:-1]:
-        index = places.get(each.target)
-        if index is None or working.states[index].stated:
-            continue
-        finding = "slip" if each.spoiled else "right"
-        working.states[index] = LineState(
-            finding,
-            False,
-            _follows(each.target, own, terms),
-            each.spoiled,
-            slips if each.spoiled else (),
-            rivals if each.spoiled else (),
-            found.words if each.spoiled else "",
-            found.sure or not each.spoiled,
-            at,
-        )
-        own.set(each.target, each.value, each.value != evaluate(each.target, terms.practice))
-    before = any(each.spoiled for each in found.trace[:-1] if each.target not in places and each.target not in had)
-    spoiled = found.finding == "slip" and bool(found.trace) and (found.trace[-1].spoiled or before)
-    state = LineState(
-        found.finding,
-        True,
-        _follows(target, own, terms),
-        spoiled,
-        slips if spoiled or not found.trace else (),
-        rivals if spoiled else (),
-        found.words,
-        found.sure,
-    )
-    if found.finding == "slip" and not spoiled:
-        state.finding, state.words, state.sure = "right", "", True
-    working.states[at] = state
-    if found.value is not None:
-        key = working.solved.steps[at].line.value
-        own.set(target, found.value, not _as_key(found, key))
-
-
-def _implied_by(working: Working, at: int) -> list[int]:
-    """The lines that nothing but what was said before on this line implies."""
-    return [index for index, state in enumerate(working.states) if state.by == at and not state.stated]
-
-
-def _as_key(found: Explained, key: Value) -> bool:
-    return found.finding == "key" or found.value == key
-
-
-def _follows(target: Target, own: Own, terms: Terms) -> bool:
-    """Whether the inputs of a line are the candidate's own and not the key's."""
-    return any(need in own.off for need, _ in frontier(target, terms.practice, own.values))

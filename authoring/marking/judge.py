@@ -10,11 +10,12 @@ from collections.abc import Sequence
 from dataclasses import replace
 
 from authoring.marking.awarding import Chosen, awarded
-from authoring.marking.chain_judge import LineState, Working, read_working, statements_of
+from authoring.marking.chain_judge import read_working, statements_of
 from authoring.marking.choice_judge import chosen, options_of
 from authoring.marking.explaining import Terms, explained
 from authoring.marking.forms import DecimalMark, Written
 from authoring.marking.judgement import Certainty, Judgement, Own, PointJudged, least
+from authoring.marking.line_states import LineState, Working
 from authoring.marking.tidy import lowered, tidied
 from authoring.marking.trace import way_to
 from authoring.marking.written import read_line

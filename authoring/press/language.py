@@ -11,12 +11,7 @@ from dataclasses import dataclass, field
 from markupsafe import Markup
 
 from authoring.faults import ContentError
-from authoring.specs.shipped import shipped_folder
-
-
-def languages() -> tuple[str, ...]:
-    """The languages there are, by their codes."""
-    return tuple(sorted(path.stem for path in (shipped_folder("templates") / "languages").glob("*.toml")))
+from authoring.specs.shipped import languages, shipped_folder
 
 
 @functools.cache

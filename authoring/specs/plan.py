@@ -10,11 +10,11 @@ from typing import Annotated, Any, Literal
 
 from pydantic import Field
 
-from authoring.faults import ContentError, Fault, FaultsFound, Source, UsageError
+from authoring.faults import ContentError, Fault, FaultsFound, Source, UsageError, suggestion
 from authoring.shielding.practice import Practice, published, with_convention
 from authoring.slips.catalogue import Slip, Slips, make_slip, shipped
 from authoring.specs.item import Item, read_item
-from authoring.specs.shipped import located
+from authoring.specs.shipped import languages, located
 from authoring.specs.validate import validated
 from authoring.specs.yaml_tree import Tree, read_tree
 from authoring.tasks.fields import Between, Strict, Text, Word, YesNo
@@ -119,6 +119,9 @@ def plan_from(
     items = _items(entries, item_named, tree, faults)
     slips_tree = _slips_tree(data.get("slips"), slips_named, tree, faults)
     slips = slips_from(slips_tree, faults) if slips_tree else shipped()
+    if fields is not None and fields.language not in languages():
+        message = f"no printed words in {fields.language[:40]!r}{suggestion(fields.language, languages())}"
+        faults.append(Fault("no-language", message, tree.at(("language",))))
     if fields is None or faults:
         raise FaultsFound(faults)
     return Plan(

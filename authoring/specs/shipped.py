@@ -19,6 +19,11 @@ def shipped_folder(name: str) -> Path:
     raise UsageError(f"the installation lacks its folder of {name}; install shieldwright again")
 
 
+def languages() -> tuple[str, ...]:
+    """The languages of printed words, by their codes: each is a file under templates/languages."""
+    return tuple(sorted(path.stem for path in (shipped_folder("templates") / "languages").glob("*.toml")))
+
+
 def shipped_names(kind: str) -> tuple[str, ...]:
     """The names of the shipped `items` or `plans`, sorted."""
     return tuple(sorted(path.stem for path in (shipped_folder("scenarios") / kind).glob("*.yaml")))

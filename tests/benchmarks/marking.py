@@ -21,6 +21,7 @@ if __name__ == "__main__":
 
 import yaml
 from marking_help import Candidate, styled
+from run import write_plan
 
 from authoring.faults import ContentError
 from authoring.marking.pile import Pile
@@ -36,20 +37,6 @@ from authoring.tasks.solved import Solved
 
 SCRIPTS = 10_000
 Made = TypeVar("Made")
-ITEM = """item: Item {number}
-level: majors
-draw:
-  metal: {{block: d, period: 4, except: [Zn]}}
-  tank: {{from: 1, to: 20}}
-story: A paper exercise about tank {{{{ tank }}}}, which holds dissolved {{{{ metal.name }}}}.
-parts:
-  - calculate: screening constant
-    of: metal
-    electron: outermost
-    marks: 3
-  - calculate: effective nuclear charge
-    marks: 1
-"""
 
 
 @dataclass(frozen=True)
@@ -70,9 +57,7 @@ class Measured:
 
 def class_of(count: int, folder: Path) -> None:
     """A set of papers, and a script for each: as the key, worked in many notations, with a slip, or bare values."""
-    for number in (1, 2, 3):
-        (folder / f"item-{number}.yaml").write_text(ITEM.format(number=number), encoding="utf-8")
-    (folder / "plan.yaml").write_text("plan: Marking\nitems: [item-1, item-2, item-3]\n", encoding="utf-8")
+    write_plan(folder)
     plan = read_plan(folder / "plan.yaml")
     made = assembled(plan, Terms(plan.practice, plan.slips), "marking", [None] * count)
     (folder / RECORD).write_text(written(made), encoding="utf-8")

@@ -105,6 +105,7 @@ TRIGGERS: dict[str, tuple[str, str | bytes]] = {
     "given": ("item", TANK + "given:\n  - caption: Nothing\n"),
     "missing-key": ("item", TANK.replace("level: first-year\n", "")),
     "no-item": ("plan", PLAN.replace("tank", "nowhere")),
+    "no-language": ("plan", PLAN + "language: xx\n"),
     "no-slips": ("plan", PLAN + "slips: nowhere.yaml\n"),
     "no-task": ("item", TANK.replace("- calculate: eff", "- computed: eff")),
     "not-utf8": ("item", TANK.encode().replace(b"evening", b"ev\xe9ning")),

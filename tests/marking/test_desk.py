@@ -113,8 +113,8 @@ def test_later_leaves_a_part_open(folder: Path) -> None:
 
 def test_unknown_codes_and_marks_are_asked_again(folder: Path) -> None:
     """The nearest code is named; marks beyond the part's are refused."""
-    said, of = sit(folder, ["XXXXX", "", "ok", "9", "0", "copied from a neighbour", "stop"])
-    assert any("no paper 'XXXXX'" in words for words in said)
+    said, of = sit(folder, ["QQQQQ", "", "ok", "9", "0", "copied from a neighbour", "stop"])
+    assert any("no paper 'QQQQQ'" in words for words in said)
     assert any("a number from 0 to 3" in words for words in said)
     assert marks(folder) == {"1a": 0}
     assert len(of.codes) == 2
