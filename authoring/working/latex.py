@@ -67,7 +67,8 @@ def _print(node: Node, style: _Style) -> str:
         case Row(items):
             return _side_by_side(items, style)
         case Listed(items):
-            return r";\ ".join(_print(item, style) for item in items)
+            # Braces keep an item on one line; the line may end after a semicolon.
+            return r";\allowbreak\ ".join(f"{{{_print(item, style)}}}" for item in items)
         case Sum():
             return _sum(shape.terms_of(node), style)
         case Product(juxtaposed=juxtaposed):
