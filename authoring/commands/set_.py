@@ -14,7 +14,7 @@ from authoring.papers.assemble import PaperSet, assembled
 from authoring.papers.chance import checked_seed, new_seed
 from authoring.papers.folder import checked_target, whole_folder
 from authoring.papers.questions import Terms
-from authoring.papers.record import RECORD, read_record, used_variants, written
+from authoring.papers.record_file import RECORD, read_drawn, used_variants, written
 from authoring.press.publish import Published, publish
 from authoring.specs.plan import Plan, read_plan
 from authoring.specs.roster import Candidate, read_roster
@@ -85,7 +85,7 @@ def _candidates(roster: str | None, copies: int | None) -> Sequence[Candidate | 
 def _assembled(plan: Plan, candidates: Sequence[Candidate | None], seed: str, allow_repeats: bool) -> PaperSet:
     apart: frozenset[tuple[str, tuple[tuple[str, str], ...]]] = frozenset()
     if plan.apart_from is not None:
-        apart = used_variants(read_record(Path(plan.path).parent / plan.apart_from))
+        apart = used_variants(read_drawn(Path(plan.path).parent / plan.apart_from))
     with progress_bar("drawing and solving") as progress:
         return assembled(
             plan,

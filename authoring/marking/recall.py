@@ -14,7 +14,7 @@ from authoring.papers.assemble import ROUND, turns
 from authoring.papers.pools import pool
 from authoring.papers.questions import Kept, Question, question
 from authoring.papers.questions import Terms as Asked
-from authoring.papers.record import read_record
+from authoring.papers.record_file import read_drawn
 from authoring.papers.variants import Variant
 from authoring.papers.views import value_text
 from authoring.specs.draws import rests_on
@@ -117,7 +117,7 @@ def labelled(asked: Question, number: int) -> QuestionToMark:
 
 def recalled(folder: Path) -> RecalledSet:
     """The set in a folder. Raises UsageError where there is none, or where its record is damaged."""
-    data = read_record(folder)
+    data = read_drawn(folder)
     try:
         return RecalledSet(data, str(folder))
     except (KeyError, TypeError, AttributeError) as error:

@@ -9,7 +9,7 @@ from contextlib import contextmanager
 from pathlib import Path
 
 from authoring.faults import UsageError
-from authoring.papers.record import RECORD
+from authoring.papers.record_file import RECORD
 
 LEDGER = "ledger.sqlite"
 

@@ -6,14 +6,10 @@ the plan and items as they were, so that a set can be marked when its files have
 
 from __future__ import annotations
 
-import json
-from collections.abc import Mapping
-from pathlib import Path
 from typing import Any
 
 from authoring import __version__
 from authoring.atoms.species import Species
-from authoring.faults import UsageError
 from authoring.papers.assemble import Paper, PaperSet
 from authoring.papers.questions import PartAsked, Question
 from authoring.shielding.quantity import Target
@@ -22,7 +18,6 @@ from authoring.tasks.solved import Options, Solved
 from authoring.working.text import to_text
 
 FORMAT = "shieldwright set 1"
-RECORD = "set.json"
 
 
 def record(paper_set: PaperSet) -> dict[str, Any]:
@@ -139,29 +134,3 @@ def _line_text(solved: Solved, index: int) -> str:
     if 0 <= index < len(solved.steps):
         return ascii_text(to_text(solved.steps[index].line.chain))
     return ""
-
-
-def written(paper_set: PaperSet) -> str:
-    """The record as JSON text: the same set gives the same bytes."""
-    return json.dumps(record(paper_set), ensure_ascii=False, indent=1, sort_keys=False) + "\n"
-
-
-def read_record(folder: Path) -> dict[str, Any]:
-    """The record in a set's folder. Raises UsageError where there is none or it is not one of ours."""
-    path = folder / RECORD if folder.is_dir() else folder
-    try:
-        data = json.loads(path.read_text(encoding="utf-8"))
-    except OSError as error:
-        raise UsageError(f"no set to read: {path}: {error.strerror or error}") from error
-    except (ValueError, RecursionError) as error:
-        raise UsageError(f"{path} is damaged: it is not JSON ({error})") from error
-    if not isinstance(data, dict) or data.get("format") != FORMAT or not isinstance(data.get("papers"), list):
-        raise UsageError(f"{path} is not a record of a set ({FORMAT})")
-    return data
-
-
-def used_variants(data: Mapping[str, Any]) -> frozenset[tuple[str, tuple[tuple[str, str], ...]]]:
-    """The (item, variables) that a recorded set used."""
-    return frozenset(
-        (item["item"], tuple(sorted(item["variables"].items()))) for paper in data["papers"] for item in paper["items"]
-    )

@@ -29,7 +29,7 @@ from authoring.marking.recall import RecalledSet, recalled
 from authoring.marking.scripts import read_scripts
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
-from authoring.papers.record import RECORD, written
+from authoring.papers.record_file import RECORD, written
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import applied, shipped
 from authoring.specs.plan import read_plan

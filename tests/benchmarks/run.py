@@ -253,7 +253,7 @@ import sys
 from pathlib import Path
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
-from authoring.papers.record import written
+from authoring.papers.record_file import written
 from authoring.specs.plan import read_plan
 plan = read_plan(Path("plan.yaml"))
 made = assembled(plan, Terms(plan.practice, plan.slips), "benchmark", [None] * int(sys.argv[1]))

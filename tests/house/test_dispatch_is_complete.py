@@ -18,7 +18,7 @@ from authoring.marking.recall import recalled
 from authoring.marking.scripts import read_scripts
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
-from authoring.papers.record import RECORD, written
+from authoring.papers.record_file import RECORD, written
 from authoring.papers.vet import vetted_item, vetted_plan
 from authoring.shielding.quantity import quantities
 from authoring.slips.catalogue import catalogue

@@ -16,7 +16,7 @@ from authoring.marking.pile import Judge
 from authoring.marking.recall import RecalledSet, recalled
 from authoring.papers.assemble import assembled
 from authoring.papers.questions import Terms
-from authoring.papers.record import RECORD, written
+from authoring.papers.record_file import RECORD, written
 from authoring.specs.plan import read_plan
 
 ITEM = """\

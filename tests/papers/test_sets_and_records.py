@@ -16,7 +16,8 @@ from papers_help import TANK, TERMS, plan
 from authoring.faults import FaultsFound, UsageError
 from authoring.papers.assemble import PaperSet, assembled
 from authoring.papers.folder import LEDGER, checked_target, whole_folder
-from authoring.papers.record import RECORD, read_record, record, used_variants, written
+from authoring.papers.record import record
+from authoring.papers.record_file import RECORD, read_drawn, read_record, used_variants, written
 from authoring.specs.roster import Candidate
 
 SECOND = TANK.replace("The evening tank", "The second tank").replace("[Cr, Cu, Zn]", "[Cr, Cu, Zn, Sc]")
@@ -83,6 +84,36 @@ def test_a_record_reads_back_as_it_was_written(tmp_path):
     assert back["texts"]["items"] == {"first": TANK, "second": SECOND}
 
 
+def without_parts(data: dict) -> dict:
+    for paper in data["papers"]:
+        for item in paper["items"]:
+            item["parts"] = []
+    return data
+
+
+def test_what_was_drawn_reads_without_the_answers(tmp_path):
+    path = tmp_path / RECORD
+    path.write_text(written(made(5)), encoding="utf-8")
+    assert read_drawn(tmp_path) == without_parts(read_record(tmp_path))
+
+
+@pytest.mark.parametrize("form", [{}, {"indent": 1}, {"indent": 2}, {"separators": (",", ":")}])
+def test_a_record_laid_out_anew_reads_the_same(tmp_path, form):
+    path = tmp_path / RECORD
+    whole = record(made(5))
+    path.write_text(json.dumps(whole, **form), encoding="utf-8")
+    assert read_record(tmp_path) == whole == read_drawn(tmp_path)
+
+
+def test_a_record_broken_off_is_said_at_any_place(tmp_path):
+    path = tmp_path / RECORD
+    text = written(made(2)).encode()
+    for end in range(0, len(text) - 2, max(1, len(text) // 200)):
+        path.write_bytes(text[:end])
+        with pytest.raises(UsageError, match="is damaged: it is not JSON"):
+            read_drawn(tmp_path)
+
+
 def test_numbers_of_a_record_are_text_with_a_plain_minus():
     def walk(value: object) -> None:
         assert value is None or isinstance(value, str | list | dict) or value is True or isinstance(value, int)
@@ -119,9 +150,10 @@ def test_names_stay_out_of_the_record():
 def test_what_is_no_record_is_said(tmp_path, content, words):
     if content is not None:
         (tmp_path / RECORD).write_text(content, encoding="utf-8")
-    with pytest.raises(UsageError) as caught:
-        read_record(tmp_path)
-    assert words in caught.value.message
+    for read in (read_record, read_drawn):
+        with pytest.raises(UsageError) as caught:
+            read(tmp_path)
+        assert words in caught.value.message
 
 
 # --- the folder -----------------------------------------------------------------------------------------
@@ -252,7 +284,7 @@ def test_a_record_does_not_depend_on_the_hash_seed(tmp_path):
     code = (
         "from pathlib import Path; from authoring.specs.plan import read_plan;"
         "from authoring.papers.assemble import assembled; from authoring.papers.questions import Terms;"
-        "from authoring.papers.record import written; p = read_plan(Path('plan.yaml'));"
+        "from authoring.papers.record_file import written; p = read_plan(Path('plan.yaml'));"
         "print(written(assembled(p, Terms(p.practice, p.slips), 's', [None] * 7)))"
     )
     for seed in ("1", "2"):
