@@ -8,25 +8,23 @@ from __future__ import annotations
 
 import datetime
 import functools
-import itertools
+import json
 import sqlite3
 from collections.abc import Iterable, Iterator, Mapping, Sequence
 from pathlib import Path
 from types import TracebackType
-from typing import Any, TypeAlias
+from typing import Any
 
 from authoring.faults import ContentError, UsageError
+from authoring.marking.ledger_entries import Entry, judgement_entry, reasoned_entry, script_entry
 from authoring.marking.ledger_events import (
     COLUMNS,
     LONGEST_NAME,
-    LONGEST_PAYLOAD,
     MARKS,
     ORDER,
     Difference,
     Event,
-    EventKind,
     checked_row,
-    encode,
     new_id,
 )
 from authoring.marking.ledger_file import (
@@ -41,9 +39,7 @@ from authoring.marking.ledger_file import (
 )
 from authoring.marking.ledger_mark import Mark
 
-_Entry: TypeAlias = "tuple[EventKind, str, str, Mapping[str, Any]]"
 _KEPT_ONCE = ("script", "judgement")
-_FEW = 20
 
 
 class Ledger:
@@ -98,11 +94,7 @@ class Ledger:
 
         One that says the same as that marker's latest is not kept again: its id is returned.
         """
-        contents = (
-            (paper, {"answers": {part: list(lines) for part, lines in answers.items()}, "candidate": candidate})
-            for paper, answers, candidate in scripts
-        )
-        return self._add((("script", paper, "", content) for paper, content in contents), marker)
+        return self.add([script_entry(*each) for each in scripts], marker)
 
     def add_judgement(self, mark: Mark, marker: str) -> str:
         """Keep one judgement; returns the event's id; see `add_judgements`."""
@@ -114,15 +106,31 @@ class Ledger:
         One that equals that marker's latest judgement of the part is not kept again, so that marking a pile once
         more leaves the changes made since in force.
         """
-        return self._add((("judgement", each.paper, each.part, each.payload()) for each in marks), marker)
+        return self.add(map(judgement_entry, marks), marker)
 
     def add_change(self, mark: Mark, marker: str, reason: str, by: str = "") -> str:
         """A new mark for a part that counts from now on for `marker`; `by` says who, where that is somebody else."""
-        return self._add([("change", mark.paper, mark.part, _reasoned(mark, reason, by))], marker)[0]
+        return self.add([reasoned_entry("change", mark, reason, by)], marker)[0]
 
     def adjudicate(self, mark: Mark, marker: str, reason: str) -> str:
         """The decision that settles a part between markers; with the reason."""
-        return self._add([("adjudication", mark.paper, mark.part, _reasoned(mark, reason, ""))], marker)[0]
+        return self.add([reasoned_entry("adjudication", mark, reason)], marker)[0]
+
+    def add(self, entries: Iterable[Entry], marker: str) -> list[str]:
+        """Add entries in one transaction; their ids in order, once they are on the disk.
+
+        A script or judgement that equals the latest of that marker keeps its id: it is not kept again.
+        """
+        _check_name("marker", marker)
+        entries = list(entries)
+        with explained(self.path), writing(self._connection):
+            # Ids begin with their turn.
+            last = self._connection.execute("SELECT turn FROM events ORDER BY id DESC LIMIT 1").fetchone()
+            turn = int(last[0]) if last else 0
+            latest = _Latest(self._connection, marker, {paper for _, paper, _, _ in entries})
+            ids: list[str] = []
+            self._insert(self._rows(entries, latest, marker, turn, ids))
+        return ids
 
     # --- reading --------------------------------------------------------------------------------------
 
@@ -192,29 +200,15 @@ class Ledger:
 
     # --- inside ---------------------------------------------------------------------------------------
 
-    def _add(self, entries: Iterable[_Entry], marker: str) -> list[str]:
-        """Add entries (kind, paper, part, content) in one transaction; their ids, once they are on the disk."""
-        _check_name("marker", marker)
-        entries = list(entries)
-        with explained(self.path), writing(self._connection):
-            # Ids begin with their turn.
-            last = self._connection.execute("SELECT turn FROM events ORDER BY id DESC LIMIT 1").fetchone()
-            turn = int(last[0]) if last else 0
-            latest = _Latest(self._connection, marker, {paper for _, paper, _, _ in entries})
-            ids: list[str] = []
-            self._insert(self._rows(entries, latest, marker, turn, ids))
-        return ids
-
     def _rows(
-        self, entries: Iterable[_Entry], latest: _Latest, marker: str, turn: int, ids: list[str]
+        self, entries: Iterable[Entry], latest: _Latest, marker: str, turn: int, ids: list[str]
     ) -> Iterator[tuple[Any, ...]]:
         """The rows of what is new among the entries; `ids` gathers the id of every entry."""
         at = datetime.datetime.now(datetime.UTC).isoformat(timespec="microseconds")
-        for kind, paper, part, content in entries:
+        for kind, paper, part, payload in entries:
             _check_name("paper", paper)
             if kind != "script":
                 _check_name("part", part)
-            payload = _payload(paper, content)
             known = latest.same(kind, paper, part, payload)
             if known is None:
                 turn += 1
@@ -257,12 +251,10 @@ class _Latest:
     """
 
     def __init__(self, connection: sqlite3.Connection, marker: str, papers: Iterable[str]) -> None:
-        # A pile reads the marker's entries at once; a marker at work, those of the paper in hand.
-        few = tuple(itertools.islice(papers, _FEW + 1))
-        paper = f"AND paper IN ({','.join('?' * len(few))})" if len(few) <= _FEW else ""
-        query = f"SELECT kind, paper, part, payload, id FROM events WHERE marker = ? {paper} ORDER BY {ORDER}"
+        query = f"""SELECT kind, paper, part, payload, id FROM events
+            WHERE paper IN (SELECT value FROM json_each(?)) AND marker = ? ORDER BY {ORDER}"""
         self._known: dict[tuple[str, str, str], tuple[str, str]] = {}
-        for row in connection.execute(query, (marker, *few) if paper else (marker,)):
+        for row in connection.execute(query, (json.dumps(list(papers)), marker)):
             self.note(*row)
 
     def note(self, kind: str, paper: str, part: str, payload: str, event_id: str) -> None:
@@ -278,20 +270,6 @@ class _Latest:
 
 def _is_empty(connection: sqlite3.Connection) -> bool:
     return not connection.execute("SELECT 1 FROM sqlite_master LIMIT 1").fetchone()
-
-
-def _reasoned(mark: Mark, reason: str, by: str) -> dict[str, Any]:
-    if not reason.strip():
-        raise ContentError("a changed mark needs its reason")
-    return {**mark.payload(), "reason": reason.strip(), "by": by}
-
-
-def _payload(paper: str, content: Mapping[str, Any]) -> str:
-    text = encode(content)
-    if len(text) > LONGEST_PAYLOAD:
-        raise ContentError(f"what is written about paper {paper[:40]} is too long to be kept")
-    # Half a character (a lone surrogate) cannot be kept as UTF-8.
-    return text if text.isascii() else text.encode("utf-8", "replace").decode("utf-8")
 
 
 def _check_name(what: str, text: str) -> None:

@@ -20,8 +20,6 @@ ORDER = "turn, at, id"
 LONGEST_NAME = 200
 LONGEST_PAYLOAD = 1_000_000
 
-encode = json.JSONEncoder(ensure_ascii=False, separators=(",", ":")).encode
-
 _ID = re.compile(r"[0-9a-f]{32}")
 
 

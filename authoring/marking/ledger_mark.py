@@ -23,20 +23,18 @@ class Mark:
         """The part's label."""
         return self.judgement.label
 
-    def payload(self) -> dict[str, Any]:
-        """What is kept of it, besides the paper and the part."""
-        judged = self.judgement
-        # Tuples, not lists: the garbage collector need not watch those of a large pile.
-        return {
-            "awarded": judged.awarded,
-            "candidate": self.candidate,
-            "certainty": judged.certainty,
-            "out_of": judged.out_of,
-            "points": tuple([(point.code, point.awarded, point.reason, point.open) for point in judged.points]),
-            "remarks": judged.remarks,
-            "rivals": judged.rivals,
-            "slips": judged.slips,
-        }
+
+def judgement_data(judged: Judgement) -> dict[str, Any]:
+    """What is kept of a judgement besides its part."""
+    return {
+        "awarded": judged.awarded,
+        "certainty": judged.certainty,
+        "out_of": judged.out_of,
+        "points": [(point.code, point.awarded, point.reason, point.open) for point in judged.points],
+        "remarks": judged.remarks,
+        "rivals": judged.rivals,
+        "slips": judged.slips,
+    }
 
 
 def mark_from(paper: str, part: str, payload: Mapping[str, Any]) -> Mark:

@@ -1,0 +1,53 @@
+"""Stage 8, mark: what is added to a ledger, as the text it is kept as: scripts, judgements, changes, decisions."""
+
+from __future__ import annotations
+
+import functools
+import json
+from collections.abc import Iterable, Mapping
+from typing import Any, TypeAlias
+
+from authoring.faults import ContentError
+from authoring.marking.judgement import Judgement
+from authoring.marking.ledger_events import LONGEST_PAYLOAD, EventKind
+from authoring.marking.ledger_mark import Mark, judgement_data
+
+# (kind, paper, part, payload): a plain tuple, since a pile hands over tens of thousands of them between processes.
+Entry: TypeAlias = "tuple[EventKind, str, str, str]"
+
+_encode = json.JSONEncoder(ensure_ascii=False, separators=(",", ":")).encode
+
+
+def script_entry(paper: str, answers: Mapping[str, Iterable[str]], candidate: str) -> Entry:
+    """A script as it was transcribed: part label → lines."""
+    content = {"answers": {part: tuple(lines) for part, lines in answers.items()}, "candidate": candidate}
+    return "script", paper, "", _kept(paper, _encode(content))
+
+
+def judgement_entry(mark: Mark) -> Entry:
+    """A judgement."""
+    return "judgement", mark.paper, mark.part, _kept(mark.paper, _with(mark, {}))
+
+
+def reasoned_entry(kind: EventKind, mark: Mark, reason: str, by: str = "") -> Entry:
+    """A mark that a person gives, with the reason; `by` says who, where the mark is somebody else's."""
+    if not reason.strip():
+        raise ContentError("a changed mark needs its reason")
+    return kind, mark.paper, mark.part, _kept(mark.paper, _with(mark, {"reason": reason.strip(), "by": by}))
+
+
+def _with(mark: Mark, more: Mapping[str, Any]) -> str:
+    """The payload of a mark: what its judgement says, made into text once for all who wrote the same, then the rest."""
+    return f"{_judgement_text(mark.judgement)[:-1]},{_encode({'candidate': mark.candidate, **more})[1:]}"
+
+
+@functools.lru_cache(maxsize=4096)
+def _judgement_text(judged: Judgement) -> str:
+    return _encode(judgement_data(judged))
+
+
+def _kept(paper: str, text: str) -> str:
+    if len(text) > LONGEST_PAYLOAD:
+        raise ContentError(f"what is written about paper {paper[:40]} is too long to be kept")
+    # Half a character (a lone surrogate) cannot be kept as UTF-8.
+    return text if text.isascii() else text.encode("utf-8", "replace").decode("utf-8")
