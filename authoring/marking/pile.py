@@ -88,7 +88,7 @@ class Pile:
             code = script.paper.upper()
             if code not in known:
                 message = f"no paper {script.paper[:40]!r} in this set{_nearest(code, codes)}"
-                self.faults.append(Fault("script-unknown-paper", message, script.source))
+                self.faults.append(Fault("script-unknown-paper", message, script.places.entry()))
                 continue
             paper = self.judge.set.paper(code)
             answers = self._answers(script, paper)
@@ -101,15 +101,15 @@ class Pile:
     def _answers(self, script: Script, paper: PaperToMark) -> dict[str, tuple[str, ...]]:
         if script.candidate and paper.candidate and script.candidate != paper.candidate:
             message = f"paper {paper.code} is {paper.candidate!r}'s; the script says {script.candidate[:40]!r}"
-            self.faults.append(Fault("script-candidate", message, script.source))
+            self.faults.append(Fault("script-candidate", message, script.places.entry()))
         found: dict[str, tuple[str, ...]] = {}
         for label, lines in script.answers.items():
             own = resolve_label(label, paper.labels)
             if own is None:
                 message = f"paper {paper.code} has no part {label!r}{suggestion(label, paper.labels)}"
-                self.faults.append(Fault("script-unknown-part", message, script.label_places[label]()))
+                self.faults.append(Fault("script-unknown-part", message, script.places.label(label)))
                 continue
-            found[own] = tuple([line.text for line in lines])
+            found[own] = lines
         return found
 
     def _compare(self, script: Script, code: str, answers: Mapping[str, tuple[str, ...]]) -> None:
@@ -118,7 +118,7 @@ class Pile:
         what = f"it differs in {', '.join(differing)}" if differing else "it says the same"
         message = f"paper {code} stands in this file twice; {what}; the first one counts"
         severity = "fault" if differing else "weakness"
-        self.faults.append(Fault("script-twice", message, script.source, severity))  # type: ignore[arg-type]
+        self.faults.append(Fault("script-twice", message, script.places.entry(), severity))  # type: ignore[arg-type]
 
 
 def _nearest(code: str, codes: Sequence[str]) -> str:

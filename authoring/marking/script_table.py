@@ -3,13 +3,12 @@
 from __future__ import annotations
 
 import csv
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 
 from authoring.faults import Fault, Source, suggestion
-from authoring.marking.scripts import Script, ScriptFile, WrittenText, canonical_label
+from authoring.marking.scripts import HEAD, Script, ScriptFile, canonical_label
 from authoring.specs.texts import control_faults, unify_breaks
-
-_HEAD = ("paper", "candidate", "marker")
 
 
 def parse_table(text: str, path: str) -> ScriptFile:
@@ -72,9 +71,9 @@ def _columns(row: Sequence[str], where: _Row) -> tuple[dict[int, str], list[Faul
     faults = []
     for index, cell in enumerate(row):
         name = cell.strip()
-        known = name.lower() if name.lower() in _HEAD else canonical_label(name)
+        known = name.lower() if name.lower() in HEAD else canonical_label(name)
         if known is None:
-            message = f"column {index + 1}: {name[:40]!r} is neither a part label nor known" + suggestion(name, _HEAD)
+            message = f"column {index + 1}: {name[:40]!r} is neither a part label nor known" + suggestion(name, HEAD)
             faults.append(Fault("csv-column", message, where.at(name)))
         elif known in found.values():
             faults.append(Fault("csv-column", f"the column {known} stands twice", where.at(name)))
@@ -92,14 +91,34 @@ def _script(row: Sequence[str], columns: Mapping[int, str], where: _Row) -> tupl
     cells = {name: row[index].strip() for index, name in columns.items() if index < len(row)}
     if not cells.get("paper"):
         return None, [Fault("script-paper", "this row does not say its paper", where.at())]
-    answers: dict[str, tuple[WrittenText, ...]] = {}
-    places: dict[str, Callable[[], Source]] = {}
+    answers: dict[str, tuple[str, ...]] = {}
+    cells_at: dict[str, Source] = {}
     start = 0
     for name, cell in cells.items():
         source = where.at(cell, start)
         start = source.column - 1 + len(cell) if cell else start
-        if name not in _HEAD:
-            answers[name] = tuple(WrittenText(line, lambda source=source: source) for line in cell.split("\n"))  # type: ignore[misc]
-            places[name] = lambda source=source: source  # type: ignore[misc]
-    script = Script(cells["paper"], answers, where.at(), cells.get("candidate", ""), cells.get("marker", ""), places)
-    return script, []
+        if name not in HEAD:
+            answers[name] = tuple(cell.split("\n"))
+            cells_at[name] = source
+    places = CellPlaces(where.at(), cells_at)
+    return Script(cells["paper"], answers, places, cells.get("candidate", ""), cells.get("marker", "")), []
+
+
+@dataclass(frozen=True, slots=True)
+class CellPlaces:
+    """The places of a script in a table: its row and its cells."""
+
+    row: Source
+    cells: Mapping[str, Source]
+
+    def entry(self) -> Source:
+        """The row."""
+        return self.row
+
+    def label(self, label: str) -> Source:
+        """The cell of a part."""
+        return self.cells[label]
+
+    def line(self, label: str, at: int) -> Source:
+        """The cell of a part, whichever of its lines is meant."""
+        return self.cells[label]

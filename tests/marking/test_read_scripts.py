@@ -5,18 +5,22 @@ from __future__ import annotations
 from pathlib import Path
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from authoring.faults import UsageError
+from authoring.faults import FaultsFound, UsageError
+from authoring.marking.script_lines import certain_entry
+from authoring.marking.script_yaml import gathered, parse_scripts
 from authoring.marking.scripts import (
+    HEAD,
     Script,
+    ScriptFile,
     canonical_label,
-    parse_scripts,
     read_scripts,
     resolve_label,
     write_blank_form,
 )
+from authoring.specs.yaml_tree import parse_tree
 
 GOOD = """\
 - paper: K7QD2
@@ -37,7 +41,7 @@ GOOD = """\
 
 def answers(script: Script) -> dict[str, list[str]]:
     """The texts of a script."""
-    return {label: [line.text for line in lines] for label, lines in script.answers.items()}
+    return {label: list(lines) for label, lines in script.answers.items()}
 
 
 def test_lines_are_text_with_their_places() -> None:
@@ -52,9 +56,9 @@ def test_lines_are_text_with_their_places() -> None:
         "c": ["4s, because its effective charge is lower"],
     }
     assert answers(second) == {"a": ["ok"], "b": ["first", "second"], "c": ["No"]}
-    assert str(first.answers["b"][1].source) == "pile.yaml:6:7"
-    assert str(second.answers["b"][1].source) == "pile.yaml:12:5"
-    assert str(second.source) == "pile.yaml:8:3"
+    assert str(first.places.line("b", 1)) == "pile.yaml:6:7"
+    assert str(second.places.line("b", 1)) == "pile.yaml:12:5"
+    assert str(second.places.entry()) == "pile.yaml:8:3"
 
 
 BROKEN = """\
@@ -74,7 +78,7 @@ def test_a_broken_entry_costs_only_itself() -> None:
     assert [script.paper for script in found.scripts] == ["AAAAA", "CCCCC"]
     assert found.faults
     assert all(fault.source is not None and 3 <= fault.source.line <= 5 for fault in found.faults)
-    assert str(found.scripts[1].answers["a"][0].source) == "pile.yaml:7:6"
+    assert str(found.scripts[1].places.line("a", 0)) == "pile.yaml:7:6"
 
 
 def test_lines_that_are_no_yaml_are_taken_as_they_stand() -> None:
@@ -89,7 +93,7 @@ def test_lines_that_are_no_yaml_are_taken_as_they_stand() -> None:
         "c": ["so: 3.30"],
         "d": ["x: 1", "[Ne] 3s1"],
     }
-    assert str(script.answers["a"][0].source) == "pile.yaml:2:6"
+    assert str(script.places.line("a", 0)) == "pile.yaml:2:6"
 
 
 def test_brackets_that_are_yaml_by_accident_stay_text() -> None:
@@ -174,7 +178,7 @@ def test_a_table_of_final_answers(tmp_path: Path, mark: str) -> None:
         ("A", "c1", {"1a": ["19.70"], "1b": ["3.30 = x"]}),
         ("B", "c2", {"1a": [""], "1b": ["ok"]}),
     ]
-    assert found.scripts[1].answers["1b"][0].source.line == 3
+    assert found.scripts[1].places.line("1b", 0).line == 3
 
 
 @pytest.mark.parametrize(
@@ -232,8 +236,9 @@ def test_no_file_stops_the_reader(text: str) -> None:
         found = parse_scripts(text, name)
         for script in found.scripts:
             assert script.paper
-            for lines in script.answers.values():
-                assert all(line.source.line <= text.count("\n") + 1 for line in lines)
+            for label, lines in script.answers.items():
+                places = [script.places.line(label, at) for at in range(len(lines))]
+                assert all(place.line <= text.count("\n") + 1 for place in places)
 
 
 @given(st.text(alphabet='paper,1ab;"\n\t x', max_size=60))
@@ -250,3 +255,81 @@ def test_a_list_of_quoted_lines_on_one_line_is_a_list() -> None:
     text = '- paper: K7QD2\n  a: ["S = 19.70", "3.30"]\n- paper: M31TX\n  a: [Ar] 3d3 4s2\n'
     found = parse_scripts(text, "pile.yaml")
     assert [answers(script) for script in found.scripts] == [{"a": ["S = 19.70", "3.30"]}, {"a": ["[Ar] 3d3 4s2"]}]
+
+
+# What people type, and what YAML makes something else of.
+ROWS = st.sampled_from(
+    ["- paper: A1", "- paper: 'B2'", "  - paper: C", "-  paper: D", "- ", "-", "- {paper: E, a: 3}",
+     "- paper: F # late", "  candidate: c-014", "  marker: \"AB\"", "  candidate: [x]", "  paper: G", "  paper:",
+     "  1a: 0.35 + 3*0.85 = 2.90", "  1b: '3.30 '", "  1b: 'it''s'", "  1b: '''x'", "  1b: '''", "  1b: 'a' 'b'",
+     "  2(b): 3.30", "  a: -4.81", "  a: - 4.81", "  a: ~~3.4~~ 3.3", "  a: [\"S = 1\", \"2\"]",
+     "  a: ['x' , \"\"]  ", "  a: [\"x\", ]", "  a: [\"x\": 1]", "  a: [Ar] 3d3", "  a: []", "  a: \"q\" # why",
+     "  a: \"\\x41\"", "  a: \"\"", "  a: ''", "  c: so: x", "  c: x:", "  c:x", "  c: x #1", "  c: x#1",
+     "  c: u://x", "  c: |", "    block", "    - deep", "  d:", "  - one", "  - two: 2", "    - one", "   - odd",
+     "    - 'q'", "    -", "    - -3", "  - ''", "  -", "  # said", "# said", "", "   ", "  e: <<", "  e: &x y",
+     "  e: *x", "  e: !t y", "  e: %", "  e: @", "  e: ,x", "  e: \u00a0x", "  e: x\ty", "  \te: y", "  e: >", "---",
+     "...", "  é: x", "  12: x", "  0: x", "  a b: x", "  ? a", "  : b", "\tf: x", "  f: 'two", "  lines'"]
+)  # fmt: skip
+
+
+def told(found: ScriptFile) -> object:
+    """All that a file of scripts says, with the place of everything (nothing has no place of its own)."""
+    scripts = [
+        (
+            script,
+            str(script.places.entry()),
+            [str(script.places.label(label)) for label in script.answers],
+            [
+                str(script.places.line(label, at))
+                for label, lines in script.answers.items()
+                for at, line in enumerate(lines)
+                if line
+            ],
+        )
+        for script in found.scripts
+    ]
+    return scripts, [(fault, fault.source) for fault in found.faults]
+
+
+@settings(max_examples=1000)
+@given(st.lists(ROWS, max_size=12).map("\n".join))
+def test_the_quick_reader_says_what_the_yaml_parser_says(text: str) -> None:
+    """In all that YAML takes as a list, also where the quick reader took some of it."""
+    try:
+        tree = parse_tree(text, "pile.yaml")
+    except FaultsFound:
+        return
+    if isinstance(tree.data, list):
+        assert told(parse_scripts(text, "pile.yaml")) == told(gathered(tree, 0))
+
+
+@settings(max_examples=1000)
+@given(st.text(alphabet="ab'\":#- [],\\|>&*3.=\t", max_size=12), st.lists(ROWS, max_size=5))
+def test_what_is_certain_is_so(typed: str, rows: list[str]) -> None:
+    """An entry that the quick reader takes is one that YAML takes, and with the same words in it."""
+    lines = ["- paper: A1", f"  1c: {typed}", *rows]
+    found = certain_entry(lines, 0)
+    if found is None:
+        return
+    (script,) = gathered(parse_tree("\n".join(lines), "pile.yaml"), 0).scripts
+    head, answers = found
+    assert (script.paper, script.candidate, script.marker) == tuple(head.get(name, "") for name in HEAD)
+    assert (list(script.answers), script.answers) == (list(answers), answers)
+
+
+def test_the_plain_forms_are_read_without_the_yaml_parser() -> None:
+    """What transcribers mostly type costs no second reading."""
+    rows = [
+        "- paper: 'A1'",
+        "  candidate: c-014",
+        "",
+        "  1a: 3.30",
+        "  1b: -4.81",
+        "  1c: ['S = 1', \"Z = 2\"]",
+        "  2a:",
+    ]
+    rows += ["    - S = 1", "", "    - 'it''s'", "  2b: ok   "]
+    assert certain_entry(rows, 0) == (
+        {"paper": "A1", "candidate": "c-014"},
+        {"1a": ("3.30",), "1b": ("-4.81",), "1c": ("S = 1", "Z = 2"), "2a": ("S = 1", "it's"), "2b": ("ok",)},
+    )
