@@ -267,9 +267,8 @@ def _note_subtrahend(working: Working, at: int, written: Written, terms: Terms) 
     line = next((index for index, step in enumerate(working.solved.steps) if step.target == need), None)
     value = pair[1]
     bare = Written(str(value), "chain", label="S", value=value, shown=str(value))
-    known = {each: had for each, had in working.own.values.items() if each != need}
     key = evaluate(need, terms.practice)
-    found = explained(need, bare, known, key, None, "", terms)
+    found = explained(need, bare, working.own.values, key, None, "", terms)
     if line is not None:
         note(working, line, found, terms)
     else:

@@ -6,13 +6,14 @@ practice with slips what a misunderstanding makes of it.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 from decimal import Decimal
 from functools import lru_cache
 from typing import Literal
 
 from authoring.faults import ContentError
+from authoring.marking.expression import Term
 from authoring.marking.forms import Member, Written
 from authoring.marking.tallies import Key, keys_of_shares, keys_of_terms, looks_like_tally
 from authoring.marking.trace import Known, Traced, frontier, traced
@@ -73,10 +74,27 @@ class Terms:
     slips: Slips
 
 
+@dataclass(frozen=True, slots=True)
+class Stated:
+    """What a statement of a number says, whatever its words: many lines of a pile say the same.
+
+    `figures` is the value as text, since 3.3 and 3.30 are equal but not given alike; `terms` a sum that could be a
+    tally; `meant` what the first worked member comes to, with its unit.
+    """
+
+    value: Decimal
+    figures: str
+    unit: str
+    terms: tuple[Term, ...]
+    meant: Decimal | None
+    meant_figures: str
+    meant_unit: str
+
+
 def explained(
     target: Target,
     written: Written,
-    own: dict[Target, Value],
+    own: Mapping[Target, Value],
     key: Value,
     rounding: Rounding | None,
     unit: str,
@@ -85,22 +103,44 @@ def explained(
     """A statement of a number, for one numeric target. `key` is the key's value, `unit` the key's unit."""
     if written.value is None:
         return Explained("open", None, words="no value is stated")
-    value, trouble = in_key_unit(written.value, written.unit, unit)
-    if not trouble and written.unit and value != written.value:
-        rounding = Rounding(figures=len(value.as_tuple().digits))  # as many as it had in its own unit
-    own = {each: had for each, had in own.items() if each != target}
     known = frontier(target, terms.practice, own)
-    found = _by_terms(target, written, known, terms)
+    return _explained(target, stated(written), known, key, rounding, unit, terms)
+
+
+def stated(written: Written) -> Stated:
+    """What a line with a value says."""
+    assert written.value is not None
+    shown = tally_shown(written)
+    worked = next((each for each in written.members if each.value is not None and not each.shown), None)
+    return Stated(
+        written.value,
+        str(written.value),
+        written.unit,
+        shown.terms if shown else (),
+        worked.value if worked else None,
+        str(worked.value) if worked else "",
+        (worked.unit or written.unit) if worked else "",
+    )
+
+
+@lru_cache(maxsize=16384)
+def _explained(
+    target: Target, said: Stated, known: Known, key: Value, rounding: Rounding | None, unit: str, terms: Terms
+) -> Explained:
+    value, trouble = in_key_unit(said.value, said.unit, unit)
+    if not trouble and said.unit and value != said.value:
+        rounding = Rounding(figures=len(value.as_tuple().digits))  # as many as it had in its own unit
+    found = _by_terms(target, said.terms, known, terms)
     if found is None:
         found = _of_value(target, value, known, key, rounding, terms)
         if found.finding == "open" and unit:
-            found, value = _of_fewer_figures(found, value, written.value, target, known, key, terms)
+            found, value = _of_fewer_figures(found, value, said.value, target, known, key, terms)
         if found.finding not in GOOD:
 
             def of_meant(meant: Decimal) -> Explained:
                 return _of_value(target, meant, known, key, None, terms)
 
-            found = _as_meant(found, written, value, unit, of_meant)
+            found = _as_meant(found, said, value, unit, of_meant)
     elif not _comes_to(found.trace[-1].value, value):
         words = f"the arithmetic: the terms come to {_short(found.trace[-1].value)}, not {_short(value)}"
         return _miscalculated(found, value, words)
@@ -122,10 +162,10 @@ def _of_fewer_figures(
 
 
 def _as_meant(
-    found: Explained, written: Written, value: Decimal, unit: str, explain_meant: Callable[[Decimal], Explained]
+    found: Explained, said: Stated, value: Decimal, unit: str, explain_meant: Callable[[Decimal], Explained]
 ) -> Explained:
     """What the worked member of a chain comes to, where the value after it is not explained by itself."""
-    meant = _meant(written, unit)
+    meant = None if said.meant is None else in_key_unit(said.meant, said.meant_unit, unit)[0]
     if meant is None or _comes_to(meant, value):
         return found
     other = explain_meant(meant)
@@ -149,14 +189,6 @@ def _kept(found: Explained, value: Decimal) -> Value:
     return value
 
 
-def _meant(written: Written, unit: str) -> Decimal | None:
-    """What the first worked member of a chain comes to, in the key's unit: what was meant before adding up."""
-    for member in written.members:
-        if member.value is not None and not member.shown:
-            return in_key_unit(member.value, member.unit or written.unit, unit)[0]
-    return None
-
-
 def _comes_to(exact: Decimal, value: Decimal) -> bool:
     """Whether working that comes to one value may be rounded to the other, on the way or at the end."""
     return _rounds_to(exact, value) or (value != 0 and abs(exact - value) <= abs(value) * WORKED)
@@ -170,14 +202,11 @@ def _rounds_to(exact: Decimal, value: Decimal) -> bool:
     return abs(exact - value) <= Decimal(1).scaleb(exponent)
 
 
-def _by_terms(target: Target, written: Written, known: Known, terms: Terms) -> Explained | None:
+def _by_terms(target: Target, shown: tuple[Term, ...], known: Known, terms: Terms) -> Explained | None:
     """A screening constant by its terms: they show the tally, which says more than the sum."""
-    if target.quantity != "screening constant" or any(each.quantity == "tally" for each, _ in known):
+    if not shown or target.quantity != "screening constant" or any(each.quantity == "tally" for each, _ in known):
         return None
-    shown = tally_shown(written)
-    if shown is None:
-        return None
-    counts, products = keys_of_terms(shown.terms)
+    counts, products = keys_of_terms(shown)
     fitting = [
         (slips, trace)
         for slips, trace, keys in tallies_under(target, terms, known)

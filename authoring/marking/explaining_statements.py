@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from functools import lru_cache
+
 from authoring.marking.explaining import Explained, Terms
 from authoring.marking.tallies import same_tally
 from authoring.marking.trace import Known, Traced, frontier, traced
@@ -11,9 +14,13 @@ from authoring.shielding.solve import evaluate
 from authoring.slips.outcomes import Combination, outcomes
 
 
-def explained_statement(target: Target, value: object, own: dict[Target, Value], terms: Terms) -> Explained:
-    own = {each: had for each, had in own.items() if each != target}
-    known = frontier(target, terms.practice, own)
+def explained_statement(target: Target, value: object, own: Mapping[Target, Value], terms: Terms) -> Explained:
+    """A statement of something that is no number, for one target; `own`: what the candidate has."""
+    return _explained(target, value, frontier(target, terms.practice, own), terms)
+
+
+@lru_cache(maxsize=8192)
+def _explained(target: Target, value: object, known: Known, terms: Terms) -> Explained:
     right = evaluate(target, terms.practice, dict(known))
     if same(right, value):
         return Explained("right", right, traced(target, terms.practice, known, ()))

@@ -6,6 +6,7 @@ candidate's own, an earlier part's), which are used as they are and not worked a
 
 from __future__ import annotations
 
+import functools
 from collections.abc import Mapping
 from dataclasses import dataclass
 
@@ -26,7 +27,13 @@ class Step:
 
 def evaluate(target: Target, practice: Practice, known: Mapping[Target, Value] | None = None) -> Value:
     """The exact value of a target. Raises ContentError where the species or practice has none."""
-    return evaluate_into(dict(known) if known else {}, target, practice)
+    return evaluate_into(dict(known), target, practice) if known else _evaluated(target, practice)
+
+
+@functools.lru_cache(maxsize=16384)
+def _evaluated(target: Target, practice: Practice) -> Value:
+    """Of nothing but the species: asked for again and again while a pile is judged."""
+    return evaluate_into({}, target, practice)
 
 
 def evaluate_into(known: dict[Target, Value], target: Target, practice: Practice) -> Value:

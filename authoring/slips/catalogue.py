@@ -63,6 +63,7 @@ class Slips:
 
     items: tuple[Slip, ...]
     _by_name: dict[str, Slip] = field(init=False, repr=False, compare=False)
+    _hash: int = field(init=False, repr=False, compare=False)
 
     def __post_init__(self) -> None:
         by_name: dict[str, Slip] = {}
@@ -71,6 +72,10 @@ class Slips:
                 raise ContentError(f"there is a slip {slip.name!r} already: give yours another name")
             by_name[slip.name] = slip
         object.__setattr__(self, "_by_name", by_name)
+        object.__setattr__(self, "_hash", hash(self.items))
+
+    def __hash__(self) -> int:
+        return self._hash
 
     def __iter__(self) -> Iterator[Slip]:
         return iter(self.items)
