@@ -3,22 +3,17 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Sequence
 from pathlib import Path
 
 import click
 
-from authoring.commands.common import json_option, print_json, progress_bar
-from authoring.faults import ContentError, UsageError, render_faults
-from authoring.marking.desk import Desk, judgement_words, with_marks
+from authoring.commands.common import json_option
+from authoring.commands.mark_file import mark_file
+from authoring.faults import ContentError, UsageError
+from authoring.marking.desk import Desk, with_marks
 from authoring.marking.ledger import Ledger
 from authoring.marking.ledger_mark import Mark
-from authoring.marking.pile import Pile, ScriptJudged
 from authoring.marking.recall import RecalledSet, recalled
-from authoring.marking.scripts import read_scripts
-
-CAUTION = "Proposed marks are for a person to confirm; your institution's assessment and data-protection rules apply."
-BATCH = 500
 
 
 @click.command("mark")
@@ -49,103 +44,19 @@ def command(
     shieldwright mark autumn-test
     """
     of = recalled(Path(folder))
-    with Ledger.open(Path(folder), of.set_id) as ledger:
-        if other is not None:
-            click.echo(f"{ledger.merge(Path(other))} new entries taken in")
-        if decide is not None:
-            _decide(of, ledger, decide, reason, marker)
-        if differences:
-            _show_differences(ledger)
-        if scripts is not None:
-            sys.exit(_mark_file(of, ledger, Path(scripts), marker, as_json, full))
-        if other is None and decide is None and not differences:
+    if other is not None or decide is not None or differences:
+        with Ledger.open(Path(folder), of.set_id) as ledger:
+            if other is not None:
+                click.echo(f"{ledger.merge(Path(other))} new entries taken in")
+            if decide is not None:
+                _decide(of, ledger, decide, reason, marker)
+            if differences:
+                _show_differences(ledger)
+    elif scripts is None:
+        with Ledger.open(Path(folder), of.set_id) as ledger:
             _at_desk(of, ledger, marker)
-
-
-# --- a file of scripts -----------------------------------------------------------------------------------
-
-
-def _mark_file(of: RecalledSet, ledger: Ledger, path: Path, marker: str, as_json: bool, full: bool) -> int:
-    read = read_scripts(path)
-    pile = Pile(of)
-    done: list[ScriptJudged] = []
-    rows: list[object] = []
-    tally = _Tally()
-    with progress_bar("marking") as progress:
-        for judged in pile.judged(read.scripts):
-            done.append(judged)
-            tally.add(judged)
-            if as_json:
-                rows += [each.data(judged.paper.code, judged.paper.candidate or None) for each in judged.judgements]
-            elif full:
-                click.echo(_script_words(judged, every=True))
-            elif judged_by_person(judged):
-                click.echo(_script_words(judged, every=False))
-            if len(done) == BATCH:
-                _keep(ledger, done, marker)
-                done = []
-            progress(tally.scripts, len(read.scripts))
-    _keep(ledger, done, marker)
-    if as_json:
-        print_json(rows)
-    else:
-        click.echo(tally.words())
-        click.echo(CAUTION)
-    faults = (*read.faults, *pile.faults)
-    if faults:
-        click.echo(render_faults(faults), err=True)
-    return 1 if any(fault.severity == "fault" for fault in faults) else 0
-
-
-class _Tally:
-    """Counts over a pile."""
-
-    def __init__(self) -> None:
-        self.scripts = self.parts = self.open = self.awarded = self.out_of = 0
-
-    def add(self, judged: ScriptJudged) -> None:
-        """Count one script."""
-        self.scripts += 1
-        for judgement in judged.judgements:
-            self.parts += 1
-            self.open += judgement.needs_person
-            self.awarded += judgement.awarded
-            self.out_of += judgement.out_of
-
-    def words(self) -> str:
-        """One line for the terminal."""
-        return (
-            f"{self.scripts} scripts, {self.parts} parts; {self.open} parts need a person; "
-            f"proposed {self.awarded} of {self.out_of} marks"
-        )
-
-
-def judged_by_person(judged: ScriptJudged) -> bool:
-    """Whether a script has a part that a person must look at."""
-    return any(judgement.needs_person for judgement in judged.judgements)
-
-
-def _script_words(judged: ScriptJudged, every: bool) -> str:
-    total = sum(judgement.awarded for judgement in judged.judgements)
-    out_of = sum(judgement.out_of for judgement in judged.judgements)
-    head = f"{judged.paper.code}  {judged.paper.candidate}".rstrip() + f"  {total} of {out_of} proposed"
-    lines = [head]
-    for judgement in judged.judgements:
-        if every or judgement.needs_person:
-            written = " | ".join(judged.answers.get(judgement.label, ())) or "nothing written"
-            lines.append(f"  {judgement.label}  {written[:70]}")
-            lines.append(judgement_words(judgement))
-    return "\n".join(lines)
-
-
-def _keep(ledger: Ledger, done: Sequence[ScriptJudged], marker: str) -> None:
-    if not done:
-        return
-    ledger.add_scripts([(each.paper.code, each.answers, each.paper.candidate) for each in done], marker)
-    ledger.add_judgements(
-        (Mark(each.paper.code, judgement, each.paper.candidate) for each in done for judgement in each.judgements),
-        marker,
-    )
+    if scripts is not None:
+        sys.exit(mark_file(of, Path(folder), Path(scripts), marker, "json" if as_json else "full" if full else "open"))
 
 
 # --- the desk and decisions --------------------------------------------------------------------------------

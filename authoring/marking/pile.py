@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 
 from authoring.faults import Fault, suggestion
@@ -24,6 +24,11 @@ class ScriptJudged:
     judgements: tuple[Judgement, ...]
     answers: Mapping[str, tuple[str, ...]]
 
+    @property
+    def needs_person(self) -> bool:
+        """Whether a person must look at a part of it."""
+        return any(judgement.needs_person for judgement in self.judgements)
+
 
 @dataclass(slots=True)
 class _Node:
@@ -40,6 +45,16 @@ class Judge:
         self.set = of
         self._roots: dict[tuple[object, ...], _Node] = {}
         self._remembered = 0
+
+    def script(self, script: Script) -> tuple[ScriptJudged | None, tuple[Fault, ...]]:
+        """A script judged, and what is wrong with it; None where its paper is not in the set."""
+        code = script.paper.upper()
+        if code not in self.set:
+            message = f"no paper {script.paper[:40]!r} in this set{suggestion(code, self.set.codes)}"
+            return None, (Fault("script-unknown-paper", message, script.places.entry()),)
+        paper = self.set.paper(code)
+        answers, faults = _placed(script, paper)
+        return ScriptJudged(paper, self.paper(paper, answers), answers), faults
 
     def paper(self, paper: PaperToMark, answers: Mapping[str, tuple[str, ...]]) -> tuple[Judgement, ...]:
         """Every part of a paper; a part without an answer was not answered."""
@@ -72,54 +87,40 @@ class Judge:
         return self._roots[key]
 
 
-class Pile:
-    """Scripts in, judged scripts out; what cannot be placed is gathered as faults."""
+def _placed(script: Script, paper: PaperToMark) -> tuple[dict[str, tuple[str, ...]], tuple[Fault, ...]]:
+    """A script's answers by the paper's own labels."""
+    faults: list[Fault] = []
+    if script.candidate and paper.candidate and script.candidate != paper.candidate:
+        message = f"paper {paper.code} is {paper.candidate!r}'s; the script says {script.candidate[:40]!r}"
+        faults.append(Fault("script-candidate", message, script.places.entry()))
+    labels = paper.labels
+    found: dict[str, tuple[str, ...]] = {}
+    for label, lines in script.answers.items():
+        own = resolve_label(label, labels)
+        if own is None:
+            message = f"paper {paper.code} has no part {label!r}{suggestion(label, labels)}"
+            faults.append(Fault("script-unknown-part", message, script.places.label(label)))
+            continue
+        found[own] = lines
+    return found, tuple(faults)
+
+
+class Firsts:
+    """The first script of each paper counts: a second one is compared, not doubled."""
 
     def __init__(self, of: RecalledSet) -> None:
-        self.judge = Judge(of)
-        self.faults: list[Fault] = []
-        self._seen: dict[str, Mapping[str, tuple[str, ...]]] = {}
+        self.set = of
+        self._seen: dict[str, Script] = {}
 
-    def judged(self, scripts: Iterable[Script]) -> Iterator[ScriptJudged]:
-        """Each script that belongs to the set, once: a second one of the same paper is compared, not doubled."""
-        codes = self.judge.set.codes
-        known = set(codes)
-        for script in scripts:
-            code = script.paper.upper()
-            if code not in known:
-                message = f"no paper {script.paper[:40]!r} in this set{_nearest(code, codes)}"
-                self.faults.append(Fault("script-unknown-paper", message, script.places.entry()))
-                continue
-            paper = self.judge.set.paper(code)
-            answers = self._answers(script, paper)
-            if code in self._seen:
-                self._compare(script, code, answers)
-                continue
-            self._seen[code] = answers
-            yield ScriptJudged(paper, self.judge.paper(paper, answers), answers)
-
-    def _answers(self, script: Script, paper: PaperToMark) -> dict[str, tuple[str, ...]]:
-        if script.candidate and paper.candidate and script.candidate != paper.candidate:
-            message = f"paper {paper.code} is {paper.candidate!r}'s; the script says {script.candidate[:40]!r}"
-            self.faults.append(Fault("script-candidate", message, script.places.entry()))
-        found: dict[str, tuple[str, ...]] = {}
-        for label, lines in script.answers.items():
-            own = resolve_label(label, paper.labels)
-            if own is None:
-                message = f"paper {paper.code} has no part {label!r}{suggestion(label, paper.labels)}"
-                self.faults.append(Fault("script-unknown-part", message, script.places.label(label)))
-                continue
-            found[own] = lines
-        return found
-
-    def _compare(self, script: Script, code: str, answers: Mapping[str, tuple[str, ...]]) -> None:
-        before = self._seen[code]
-        differing = [label for label in {**before, **answers} if before.get(label) != answers.get(label)]
+    def again(self, script: Script) -> Fault | None:
+        """Nothing for the first script of a paper of the set; what to say of a later one."""
+        code = script.paper.upper()
+        first = self._seen.setdefault(code, script)
+        if first is script:
+            return None
+        paper = self.set.paper(code)
+        (before, _), (now, _) = _placed(first, paper), _placed(script, paper)
+        differing = [label for label in {**before, **now} if before.get(label) != now.get(label)]
         what = f"it differs in {', '.join(differing)}" if differing else "it says the same"
         message = f"paper {code} stands in this file twice; {what}; the first one counts"
-        severity = "fault" if differing else "weakness"
-        self.faults.append(Fault("script-twice", message, script.places.entry(), severity))  # type: ignore[arg-type]
-
-
-def _nearest(code: str, codes: Sequence[str]) -> str:
-    return suggestion(code, codes)
+        return Fault("script-twice", message, script.places.entry(), "fault" if differing else "weakness")

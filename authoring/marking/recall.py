@@ -69,6 +69,9 @@ class RecalledSet:
         """The paper codes, in the order of the record."""
         return tuple(self._places)
 
+    def __contains__(self, code: str) -> bool:
+        return code in self._places
+
     def paper(self, code: str) -> PaperToMark:
         """One paper. Raises KeyError for a code that is not in the set."""
         if code not in self._papers:

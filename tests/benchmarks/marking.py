@@ -24,7 +24,7 @@ from marking_help import Candidate, styled
 from run import write_plan
 
 from authoring.faults import ContentError
-from authoring.marking.pile import Pile
+from authoring.marking.pile import Judge
 from authoring.marking.recall import RecalledSet, recalled
 from authoring.marking.scripts import read_scripts
 from authoring.papers.assemble import assembled
@@ -93,7 +93,8 @@ def timed(make: Callable[[], Made]) -> tuple[float, Made]:
 
 def judged_all(of: RecalledSet, path: Path) -> int:
     """Judge every script of a file, keeping nothing."""
-    return sum(1 for _ in Pile(of).judged(read_scripts(path).scripts))
+    judge = Judge(of)
+    return sum(1 for script in read_scripts(path).scripts if judge.script(script))
 
 
 def marking_ratio(count: int = SCRIPTS) -> Measured:
@@ -105,7 +106,8 @@ def marking_ratio(count: int = SCRIPTS) -> Measured:
         parsing, _ = timed(lambda: yaml.load(path.read_text(encoding="utf-8"), yaml.CSafeLoader))
         recalling, of = timed(lambda: recalled(folder))
         reading, read = timed(lambda: read_scripts(path))
-        judging, _ = timed(lambda: sum(1 for _ in Pile(of).judged(read.scripts)))
+        judge = Judge(of)
+        judging, _ = timed(lambda: sum(1 for script in read.scripts if judge.script(script)))
         tracemalloc.start()
         judged_all(recalled(folder), path)
         growth = tracemalloc.get_traced_memory()[0] / 1e6

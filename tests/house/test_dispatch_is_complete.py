@@ -13,7 +13,7 @@ from papers_help import TANK, TERMS, plan
 import authoring
 from authoring.commands.guide_topics import TOPICS, topic
 from authoring.faults import Fault, FaultsFound
-from authoring.marking.pile import Pile
+from authoring.marking.pile import Firsts, Judge
 from authoring.marking.recall import recalled
 from authoring.marking.scripts import read_scripts
 from authoring.papers.assemble import assembled
@@ -163,9 +163,14 @@ def pile_faults(folder: Path, text: str) -> tuple[Fault, ...]:
     (folder / "scripts.yaml").write_text(text.replace("CODE", made.papers[0].code), encoding="utf-8")
     read = read_scripts(folder / "scripts.yaml")
     assert read.faults == ()
-    pile = Pile(recalled(folder))
-    list(pile.judged(read.scripts))
-    return tuple(pile.faults)
+    of = recalled(folder)
+    judge, firsts = Judge(of), Firsts(of)
+    faults: list[Fault] = []
+    for script in read.scripts:
+        judged, found = judge.script(script)
+        again = firsts.again(script) if judged else None
+        faults += [*found, *([again] if again else [])]
+    return tuple(faults)
 
 
 def faults_of(folder: Path, kind: str, text: str | bytes) -> tuple[Fault, ...]:

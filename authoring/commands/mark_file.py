@@ -1,0 +1,197 @@
+"""`mark` with a file: the lot is judged on all cores, kept in the ledger, and what needs a person is listed."""
+
+from __future__ import annotations
+
+import functools
+import gc
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any, Literal
+
+import click
+
+from authoring.commands.common import print_json, progress_bar
+from authoring.faults import Fault, render_faults
+from authoring.marking.cores import cores, spread
+from authoring.marking.desk import judgement_words
+from authoring.marking.ledger import Ledger
+from authoring.marking.ledger_entries import Entry, judgement_entry, script_entry
+from authoring.marking.ledger_mark import Mark
+from authoring.marking.pile import Firsts, Judge, ScriptJudged
+from authoring.marking.recall import RecalledSet, recalled
+from authoring.marking.scripts import Script, read_scripts
+
+CAUTION = "Proposed marks are for a person to confirm; your institution's assessment and data-protection rules apply."
+Form = Literal["open", "full", "json"]
+
+# Scripts judged at a time: what is kept of one heap is on the disk before the next is asked for.
+HEAP = 250
+# Fewer are judged sooner than a second process is there.
+FEWEST_TO_SPREAD = 500
+# Judging keeps what it finds and makes few cycles: with the usual 700 the collector takes a quarter of the time.
+COLLECTED_AFTER = 100_000
+
+
+def mark_file(of: RecalledSet, folder: Path, path: Path, marker: str, form: Form) -> int:
+    """Judge the scripts of a file into the ledger and print what `form` asks for; the exit code."""
+    read = read_scripts(path)
+    _collect_seldom()
+    heaps = [(at, min(at + HEAP, len(read.scripts))) for at in range(0, len(read.scripts), HEAP)]
+    workers = cores() if len(read.scripts) >= FEWEST_TO_SPREAD else 1
+    # The workers are there before the ledger is open: none of them holds its file.
+    make = _maker(of, read.scripts, folder, path, form)
+    with spread(make, heaps, workers) as judged, Ledger.open(folder, of.set_id) as ledger:
+        total = _Total(Firsts(of), form)
+        with progress_bar("marking") as progress:
+            for (start, end), outcomes in zip(heaps, judged, strict=True):
+                ledger.add(total.take(read.scripts[start:end], outcomes), marker)
+                progress(end, len(read.scripts))
+    total.close()
+    faults = (*read.faults, *total.faults)
+    if faults:
+        click.echo(render_faults(faults), err=True)
+    return 1 if any(fault.severity == "fault" for fault in faults) else 0
+
+
+def _collect_seldom() -> None:
+    gc.freeze()
+    gc.set_threshold(COLLECTED_AFTER)
+
+
+@dataclass(frozen=True, slots=True)
+class Outcome:
+    """What is told of one script: for the ledger, for the reader, and for the counts.
+
+    `marks`: parts, parts that need a person, marks proposed, marks there are.
+    """
+
+    faults: tuple[Fault, ...]
+    entries: tuple[Entry, ...] = ()
+    shown: Any = ()
+    marks: tuple[int, int, int, int] = (0, 0, 0, 0)
+
+    @property
+    def known(self) -> bool:
+        """Whether its paper is in the set."""
+        return bool(self.entries)
+
+
+class _Total:
+    """The outcomes of a pile, in order: counted, and printed as they come."""
+
+    def __init__(self, firsts: Firsts, form: Form) -> None:
+        self.firsts = firsts
+        self.form = form
+        self.faults: list[Fault] = []
+        self.rows: list[object] = []
+        self.scripts = 0
+        self.marks = (0, 0, 0, 0)
+
+    def take(self, scripts: Sequence[Script], outcomes: Sequence[Outcome]) -> list[Entry]:
+        """Take some scripts' outcomes; what the ledger is to keep of them."""
+        kept: list[Entry] = []
+        for script, outcome in zip(scripts, outcomes, strict=True):
+            self.faults += outcome.faults
+            again = self.firsts.again(script) if outcome.known else None
+            if again is not None:
+                self.faults.append(again)
+            elif outcome.known:
+                kept += outcome.entries
+                self.scripts += 1
+                self.marks = tuple(map(sum, zip(self.marks, outcome.marks, strict=True)))  # type: ignore[assignment]
+                self._show(outcome.shown)
+        return kept
+
+    def _show(self, shown: Any) -> None:
+        if self.form == "json":
+            self.rows += shown
+        elif shown:
+            click.echo(shown)
+
+    def close(self) -> None:
+        """The last lines."""
+        if self.form == "json":
+            print_json(self.rows)
+            return
+        parts, left, awarded, out_of = self.marks
+        click.echo(
+            f"{self.scripts} scripts, {parts} parts; {left} parts need a person; "
+            f"proposed {awarded} of {out_of} marks\n{CAUTION}"
+        )
+
+
+# --- judging a heap, in whichever process --------------------------------------------------------------------
+
+
+def _maker(
+    of: RecalledSet, scripts: Sequence[Script], folder: Path, path: Path, form: Form
+) -> Callable[[], Callable[[tuple[int, int]], list[Outcome]]]:
+    """What makes the judge of heaps: here from what was read, in a process begun anew by reading it again."""
+    return functools.partial(_HeapJudge, _Material(of, scripts, folder, path), form)
+
+
+@dataclass(slots=True)
+class _Material:
+    """The set and the scripts. Sent to another process it sends their paths, and is read again there."""
+
+    of: RecalledSet
+    scripts: Sequence[Script]
+    folder: Path
+    path: Path
+
+    def __reduce__(self) -> tuple[Callable[[Path, Path], _Material], tuple[Path, Path]]:
+        return _read_again, (self.folder, self.path)
+
+
+def _read_again(folder: Path, path: Path) -> _Material:
+    return _Material(recalled(folder), read_scripts(path).scripts, folder, path)
+
+
+class _HeapJudge:
+    """Judges heaps of scripts, given by where they begin and end."""
+
+    def __init__(self, material: _Material, form: Form) -> None:
+        _collect_seldom()
+        self.scripts = material.scripts
+        self.judge = Judge(material.of)
+        self.form = form
+
+    def __call__(self, heap: tuple[int, int]) -> list[Outcome]:
+        return [self.outcome(script) for script in self.scripts[slice(*heap)]]
+
+    def outcome(self, script: Script) -> Outcome:
+        """One script."""
+        judged, faults = self.judge.script(script)
+        if judged is None:
+            return Outcome(faults)
+        code, candidate = judged.paper.code, judged.paper.candidate
+        entries = [script_entry(code, judged.answers, candidate)]
+        entries += [judgement_entry(Mark(code, each, candidate)) for each in judged.judgements]
+        return Outcome(faults, tuple(entries), self._shown(judged), _marks(judged))
+
+    def _shown(self, judged: ScriptJudged) -> Any:
+        if self.form == "json":
+            return [each.data(judged.paper.code, judged.paper.candidate or None) for each in judged.judgements]
+        return _words(judged, self.form == "full") if self.form == "full" or judged.needs_person else ""
+
+
+def _marks(judged: ScriptJudged) -> tuple[int, int, int, int]:
+    several = judged.judgements
+    return (
+        len(several),
+        sum(each.needs_person for each in several),
+        sum(each.awarded for each in several),
+        sum(each.out_of for each in several),
+    )
+
+
+def _words(judged: ScriptJudged, every: bool) -> str:
+    _, _, awarded, out_of = _marks(judged)
+    lines = [f"{judged.paper.code}  {judged.paper.candidate}".rstrip() + f"  {awarded} of {out_of} proposed"]
+    for judgement in judged.judgements:
+        if every or judgement.needs_person:
+            written = " | ".join(judged.answers.get(judgement.label, ())) or "nothing written"
+            lines.append(f"  {judgement.label}  {written[:70]}")
+            lines.append(judgement_words(judgement))
+    return "\n".join(lines)
