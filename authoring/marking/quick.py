@@ -15,11 +15,15 @@ from authoring.working.nodes import Measured, Negative, Node, Num, Product, Sum,
 
 _NUMBER = r"[0-9]{1,15}(?:\.[0-9]{1,15})?"
 _LINE = re.compile(
-    rf"(?:(S|E|Zeff|Z_eff)\s*=)?\s*([-−]?{_NUMBER}(?:\s*[-+*×x=−]\s*{_NUMBER})*)(?:\s*(eV|kJ/mol|pm))?\s*"
+    r"(?:(S|σ|E|Zeff|Z_eff|Z_\{eff\}|Z\*)\s*=)?\s*(?:Z\s*[-−]\s*([Sσ])\s*=)?\s*"
+    rf"([-−]?{_NUMBER}(?:\s*[-+*×x=−]\s*{_NUMBER})*)(?:\s*(eV|kJ/mol|pm))?\s*"
 )
 _TOKEN = re.compile(rf"{_NUMBER}|[-+*×x=−]")
 _ONE = Decimal(1)
-_SYMBOLS = {"S": Sym("S"), "E": Sym("E"), "Zeff": Sym("Z", "eff"), "Z_eff": Sym("Z", "eff")}
+_SYMBOLS = {
+    **{name: Sym(name) for name in ("S", "σ", "E")},
+    **{name: Sym("Z", "eff") for name in ("Zeff", "Z_eff", "Z_{eff}", "Z*")},
+}
 
 
 def read_quick(text: str) -> Written | None:
@@ -27,9 +31,13 @@ def read_quick(text: str) -> Written | None:
     found = _LINE.fullmatch(text)
     if found is None:
         return None
-    label, body, unit = found.groups()
+    label, screening, body, unit = found.groups()
     members = [Member(_SYMBOLS[label])] if label else []
     relation = "=" if label else ""
+    if screening:
+        difference = Sum((("+", Sym("Z")), ("−", Sym(screening))))
+        members.append(Member(difference, relation=relation))
+        relation = "="
     terms: list[tuple[str, Node]] = []
     factors: list[Node] = []
     sign = "+"

@@ -35,6 +35,8 @@ _OK = frozenset(("ok", "ok.", "okay", "✓", "✔"))
 _BLANK = frozenset(("", "-", "--", "---", "...", "…"))
 _APART = re.compile(r";|,\s+(?=[A-Za-zσχμ][A-Za-z_*]{0,5}(?:\([^()]{1,8}\))?\s*[=≈])|\band\b(?=[^=]{1,12}=)")
 _MOST_STATEMENTS = 40
+# It says nothing, not even a reason.
+_LEADING_OVER = re.compile(r"^(?:∴|(?:so|thus|hence|therefore|then)\b,?)\s*(?=[SσEZ0-9-])", re.IGNORECASE)
 
 
 def read_line(text: str, decimal: DecimalMark = "auto") -> Written:
@@ -61,7 +63,7 @@ def _read(text: str, decimal: DecimalMark) -> Written:
         return Written(text, "blank", struck=struck)
     if plain.lower() in _OK:
         return Written(text, "ok", struck=struck)
-    if plain[:1].isdigit() and (found := _quick_again(plain, decimal)) is not None:
+    if (found := _quick_again(plain, decimal)) is not None:
         return replace(found, text=text, struck=struck)
     about, rest = split_about(plain)
     found = _read_plain(rest, decimal)
@@ -71,8 +73,8 @@ def _read(text: str, decimal: DecimalMark) -> Written:
 
 
 def _quick_again(plain: str, decimal: DecimalMark) -> Written | None:
-    """The plain forms once more, with one typography and decimal points."""
-    pointed, remark = with_points(plain, decimal)
+    """The plain forms once more, with one typography and decimal points, and without what leads over to them."""
+    pointed, remark = with_points(_LEADING_OVER.sub("", plain, count=1), decimal)
     found = read_quick(pointed)
     return replace(found, remark=remark) if found is not None and remark else found
 

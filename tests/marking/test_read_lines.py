@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import time
+from dataclasses import replace
 from decimal import Decimal
 
 import pytest
@@ -293,15 +294,27 @@ NUMBERS = st.from_regex(r"[0-9]{1,3}(\.[0-9]{1,3})?", fullmatch=True)
 SIGNS = st.sampled_from([" + ", "-", " × ", "*", " = ", "="])
 
 
-@given(first=NUMBERS, rest=st.lists(st.tuples(SIGNS, NUMBERS), max_size=8), head=st.sampled_from(["", "S = ", "-"]))
+HEADS = st.sampled_from(
+    ["", "S = ", "σ=", "-", "Zeff = Z - S = ", "Z_{eff} = ", "Z* = Z − σ = ", "Z - S = ", "Z_eff=", "E = "]
+)
+
+
+@given(first=NUMBERS, rest=st.lists(st.tuples(SIGNS, NUMBERS), max_size=8), head=HEADS)
 def test_the_quick_reader_and_the_grammar_agree(first: str, rest: list[tuple[str, str]], head: str) -> None:
     """Two readers of one form give one structure."""
     line = head + first + "".join(sign + number for sign, number in rest)
     quick = read_quick(line)
     assert quick is not None
-    slow = read_chain(line.replace("×", "*"), "auto")
+    slow = read_chain(line.replace("×", "*").replace("−", "-"), "auto")
     assert slow is not None
     assert (quick.members, quick.label, quick.value, quick.shown) == (slow.members, slow.label, slow.value, slow.shown)
+
+
+@pytest.mark.parametrize("word", ["so ", "Thus, ", "therefore ", "∴ ", "hence "])
+@pytest.mark.parametrize("line", ["S = 2*0.35 + 1,0 = 1,7", "Z* = Z − S = 3 − 1.7 = 1.3", "1.7", "σ = 1.7"])
+def test_what_leads_over_to_a_line_adds_nothing(word: str, line: str) -> None:
+    """The line says the same without it."""
+    assert replace(read_line(word + line), text="") == replace(read_line(line), text="")
 
 
 PIECES = st.sampled_from(
