@@ -37,6 +37,10 @@ class Working:
     states: list[LineState]
     own: Own
     remarks: list[str] = field(default_factory=list)
+    places: dict[Target, int] = field(init=False)
+
+    def __post_init__(self) -> None:
+        self.places = {step.target: at for at, step in enumerate(self.solved.steps)}
 
 
 def open_lines(working: Working, names: set[str], written: Written) -> Iterator[int]:
@@ -68,7 +72,7 @@ def note(working: Working, at: int, found: Explained, terms: Terms) -> None:
         own.drop(working.solved.steps[implied].target)
         working.states[implied] = LineState()
     had = set(own.values)
-    places = {step.target: index for index, step in enumerate(working.solved.steps)}
+    places = working.places
     slips = tuple(slip.name for slip in found.slips)
     rivals = tuple(" + ".join(slip.name for slip in each) for each in found.rivals)
     target = working.solved.steps[at].target

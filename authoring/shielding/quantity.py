@@ -23,8 +23,15 @@ from authoring.working.numbers import Rounding
 Value = Any  # Decimal, Configuration, tuple[Group, ...], tuple[Share, ...], Subshell: what the quantity states
 
 
+class _Hashed:
+    """Room for a hash that is worked out once: targets are looked up tens of times for each line that is judged."""
+
+    __slots__ = ("_hash",)
+    _hash: int
+
+
 @dataclass(frozen=True, slots=True)
-class Target:
+class Target(_Hashed):
     """One quantity of one species: what a line of working is about.
 
     `electron` None means the outermost electron, whatever the practice says that is. `detail` holds what else the
@@ -35,6 +42,13 @@ class Target:
     species: Species
     electron: Subshell | None = None
     detail: tuple[tuple[str, str], ...] = ()
+
+    def __hash__(self) -> int:
+        try:
+            return self._hash
+        except AttributeError:
+            object.__setattr__(self, "_hash", hash((self.quantity, self.species, self.electron, self.detail)))
+            return self._hash
 
     def get(self, name: str, default: str = "") -> str:
         """A detail by name."""
