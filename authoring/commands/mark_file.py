@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import functools
-import gc
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
@@ -13,7 +12,7 @@ import click
 
 from authoring.commands.common import print_json, progress_bar
 from authoring.faults import Fault, render_faults
-from authoring.marking.cores import cores, spread
+from authoring.marking.cores import cores, seldom_collected, spread
 from authoring.marking.desk import judgement_words
 from authoring.marking.ledger import Ledger
 from authoring.marking.ledger_entries import Entry, judgement_entry, script_entry
@@ -29,19 +28,16 @@ Form = Literal["open", "full", "json"]
 HEAP = 250
 # Fewer are judged sooner than a second process is there.
 FEWEST_TO_SPREAD = 500
-# Judging keeps what it finds and makes few cycles: with the usual 700 the collector takes a quarter of the time.
-COLLECTED_AFTER = 100_000
 
 
 def mark_file(of: RecalledSet, folder: Path, path: Path, marker: str, form: Form) -> int:
     """Judge the scripts of a file into the ledger and print what `form` asks for; the exit code."""
     read = read_scripts(path)
-    _collect_seldom()
     heaps = [(at, min(at + HEAP, len(read.scripts))) for at in range(0, len(read.scripts), HEAP)]
     workers = cores() if len(read.scripts) >= FEWEST_TO_SPREAD else 1
     # The workers are there before the ledger is open: none of them holds its file.
     make = _maker(of, read.scripts, folder, path, form)
-    with spread(make, heaps, workers) as judged, Ledger.open(folder, of.set_id) as ledger:
+    with seldom_collected(), spread(make, heaps, workers) as judged, Ledger.open(folder, of.set_id) as ledger:
         total = _Total(Firsts(of), form)
         with progress_bar("marking") as progress:
             for (start, end), outcomes in zip(heaps, judged, strict=True):
@@ -52,11 +48,6 @@ def mark_file(of: RecalledSet, folder: Path, path: Path, marker: str, form: Form
     if faults:
         click.echo(render_faults(faults), err=True)
     return 1 if any(fault.severity == "fault" for fault in faults) else 0
-
-
-def _collect_seldom() -> None:
-    gc.freeze()
-    gc.set_threshold(COLLECTED_AFTER)
 
 
 @dataclass(frozen=True, slots=True)
@@ -152,7 +143,6 @@ class _HeapJudge:
     """Judges heaps of scripts, given by where they begin and end."""
 
     def __init__(self, material: _Material, form: Form) -> None:
-        _collect_seldom()
         self.scripts = material.scripts
         self.judge = Judge(material.of)
         self.form = form
