@@ -16,7 +16,7 @@ from authoring.specs.item import Item, item_from
 from authoring.specs.plan import Plan, plan_from
 from authoring.specs.yaml_tree import parse_tree
 
-TERMS = Terms(published(), shipped())
+TERMS = Terms(published(), shipped(), new=True)
 
 TANK = """item: The evening tank
 level: first-year
@@ -35,7 +35,7 @@ parts:
 
 def read(text: str, name: str = "tank") -> Item:
     """An item from its text."""
-    return item_from(parse_tree(text, f"{name}.yaml"), name)
+    return item_from(parse_tree(text, f"{name}.yaml"), name, new=True)
 
 
 def variants(text: str) -> Pool:

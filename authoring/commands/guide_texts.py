@@ -54,9 +54,16 @@ Drawn values stand in double braces:
   {{ n | words }} {{ n | ordinal }} {{ x | lower }} {{ list | join("or") }}
   {% if metal.charge > 0 %}…{% else %}…{% endif %}
 
+They do in `story`, `caution`, `notes`, the texts of parts, of tables (`given`)
+and of the `figure`. In the `ask` of calculate, correct and select,
+{{ rounding }} is how the answer is to be given (to 4 significant figures); a
+wording of your own replaces the default with its sentence on rounding, so put
+it in: `Give your answer {{ rounding }}.`
+
 Lines under `keep` are conditions in the same language, and every one must hold
 for a variant to exist: `metal.unpaired > 0`, `one != other`,
-`metal.z < other.z and metal.block == "d"`.
+`metal.z < other.z and metal.block == "d"`. What a drawn species or electron has
+(`metal.unpaired`) is listed at the end of `shieldwright guide item`.
 """
 
 SETTING = """\

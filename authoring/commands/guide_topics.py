@@ -10,10 +10,10 @@ from pydantic import BaseModel
 
 from authoring.commands.guide_texts import ERRORS, FIRST_ITEM, ITEM_TEXT, JSON, MARKING, SCRIPTS, SETTING
 from authoring.faults import ContentError
-from authoring.papers.views import ElectronView, SpeciesView
 from authoring.shielding.practice import convention_fields, published
 from authoring.shielding.quantity import quantities, quantity
 from authoring.slips.catalogue import catalogue, shipped
+from authoring.specs.drawn_names import HAS
 from authoring.specs.draws import TELLING, SpeciesDraw
 from authoring.specs.item import FigureFields, GivenTable, ItemFields
 from authoring.specs.plan import LayoutFields, PlanFields, PlanItem
@@ -178,9 +178,9 @@ def items_text() -> str:
         summary = (kind.__doc__ or "").strip().splitlines()[0]
         parts += ["", wrapped(f"{told}: {summary}", 2), entries(keys(kind), 4)]
     parts += ["", "A table under `given`:", entries(keys(GivenTable)), "", "`figure`:", entries(keys(FigureFields))]
-    species_has = ", ".join(SpeciesView.TEMPLATE_NAMES)
+    species_has = ", ".join(HAS["species"])
     parts += ["", wrapped(f"In texts and conditions a drawn species has: {species_has}.")]
-    parts += [wrapped("A drawn electron has: " + ", ".join(ElectronView.TEMPLATE_NAMES) + ".")]
+    parts += [wrapped("A drawn electron has: " + ", ".join(HAS["electron"]) + ".")]
     parts += ["", wrapped("Shipped items: " + ", ".join(shipped_names("items")) + ".")]
     return "\n".join(parts)
 

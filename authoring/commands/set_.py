@@ -89,7 +89,7 @@ def _assembled(plan: Plan, candidates: Sequence[Candidate | None], seed: str, al
     with progress_bar("drawing and solving") as progress:
         return assembled(
             plan,
-            Terms(plan.practice, plan.slips, plan.figures),
+            Terms(plan.practice, plan.slips, plan.figures, new=True),
             seed,
             candidates,
             allow_repeats=allow_repeats,

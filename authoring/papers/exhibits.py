@@ -7,7 +7,7 @@ import re
 from authoring.faults import ContentError
 from authoring.shielding.quantity import Target, quantity
 from authoring.shielding.solve import work
-from authoring.specs.item import GivenTable, Item
+from authoring.specs.item import FigureFields, GivenTable
 from authoring.specs.prose import read_prose
 from authoring.tasks.read import chart_of
 from authoring.tasks.setting import Setting, electron_named
@@ -18,9 +18,9 @@ from authoring.working.nodes import Inline, Math, Num, Paragraph, Plain, TableBl
 _NUMBER = re.compile(r"[-−]?[0-9]+(?:\.[0-9]+)?")
 
 
-def tables_of(item: Item, setting: Setting) -> tuple[TableBlock, ...]:
-    """The item's tables. Raises ContentError where a species lacks the quantity."""
-    return tuple(_computed(table, setting) if table.quantity else _typed(table) for table in item.given)
+def table_of(table: GivenTable, setting: Setting) -> TableBlock:
+    """A table of an item. Raises ContentError where a species lacks the quantity."""
+    return _computed(table, setting) if table.quantity else _typed(table)
 
 
 def inlines(text: str) -> tuple[Inline, ...]:
@@ -70,11 +70,8 @@ def _computed(table: GivenTable, setting: Setting) -> TableBlock:
     )
 
 
-def figure_of(item: Item, setting: Setting) -> Chart | None:
-    """The item's chart, or None. Raises ContentError where a species lacks the quantity."""
-    figure = item.figure
-    if figure is None:
-        return None
+def chart_shown(figure: FigureFields, setting: Setting) -> Chart:
+    """The chart of an item. Raises ContentError where a species lacks the quantity."""
     if figure.electrons:
         if len(figure.of) != 1:
             raise ContentError("a chart of electrons is of one species: name one under `of`")

@@ -3,33 +3,38 @@
 from __future__ import annotations
 
 import string
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
-from functools import lru_cache
-from typing import Any
+from functools import lru_cache, partial
+from typing import Any, TypeVar
 
-from pydantic import ValidationError
+from pydantic import BaseModel, ValidationError
 
 from authoring.atoms.species import Species
 from authoring.faults import ContentError, Fault, FaultsFound, Source
-from authoring.papers.exhibits import figure_of, tables_of
+from authoring.papers.exhibits import chart_shown, table_of
 from authoring.papers.pools import pool
 from authoring.papers.variants import Variant
 from authoring.papers.views import value_text, view
 from authoring.shielding.practice import Practice
 from authoring.slips.catalogue import Slips
+from authoring.specs.drawn_names import ROUNDING
 from authoring.specs.draws import rests_on
-from authoring.specs.item import Alternative, Item, Part, texts_in
+from authoring.specs.item import Alternative, FigureFields, Item, Part, alternatives, texts_in
+from authoring.specs.item import parts_of as parts_of
 from authoring.specs.prose import ProseFault, read_prose
 from authoring.specs.template import Template
 from authoring.specs.template_expressions import TemplateFault
 from authoring.tasks.apart import told_apart
-from authoring.tasks.setting import Setting
+from authoring.tasks.setting import Setting, rounding_said
 from authoring.tasks.solved import Chart, Solved
 from authoring.working.nodes import Prose, TableBlock
 
 LETTERS = string.ascii_lowercase
 ROMAN = ("i", "ii", "iii", "iv", "v", "vi")
+Steps = tuple[str | int, ...]
+_Fields = TypeVar("_Fields", bound=BaseModel)
+_Made = TypeVar("_Made")
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,11 +78,15 @@ class Question:
 
 @dataclass(frozen=True, slots=True)
 class Terms:
-    """What a plan asks of every question: the practice, figures, the slips that are known."""
+    """What a plan asks of every question: the practice, figures, the slips that are known.
+
+    `new`: questions are written now and not made again from a record, so that what older records may hold is a fault.
+    """
 
     practice: Practice
     slips: Slips
     figures: int | None = None
+    new: bool = False
 
 
 class Kept:
@@ -135,26 +144,54 @@ class _Maker:
         bindings, terms = self.variant.bindings, self.terms
         named = frozenset[str]().union(*(self.kept.names(part, self.item) for part in parts_of(self.item)))
         pools = {name: pool(draw, bindings, terms.practice) for name, draw in self.item.draws.items() if name in named}
-        setting = Setting(terms.practice, bindings, (), self.turn, terms.figures, terms.slips, pools)
-        figure = self.item.figure
+        setting = Setting(terms.practice, bindings, (), self.turn, terms.figures, terms.slips, pools, terms.new)
+        figure = self.figure()
         return Question(
             variant=self.variant,
             title=self.item.title,
             story=self.prose(self.item.story, "story"),
             caution=self.prose(self.item.caution, "caution"),
             notes=tuple(self.prose(text, "notes", at) for at, text in enumerate(self.item.notes)),
-            tables=self.attempt(lambda: tables_of(self.item, setting), (), "given"),
-            figure=self.attempt(lambda: figure_of(self.item, setting), None, "figure"),
-            figure_caption=self.plain(figure.caption, "figure") if figure else (),
+            tables=self.tables(setting),
+            figure=self.attempt(lambda: chart_shown(figure, setting), "figure") if figure else None,
+            figure_caption=self.plain(figure.caption, "figure", "caption") if figure else (),
             parts=self.parts(setting),
         )
 
-    def attempt(self, make: Callable[[], Any], otherwise: Any, *steps: str | int) -> Any:
+    def tables(self, setting: Setting) -> tuple[TableBlock, ...]:
+        """The tables of the item, those that can be made."""
+        made = []
+        for at, table in enumerate(self.item.given):
+            steps = ("given", at)
+            filled = self.attempt(partial(self.exhibit, table, steps), *steps)
+            made.append(self.attempt(partial(table_of, filled, setting), *steps) if filled else None)
+        return tuple(table for table in made if table is not None)
+
+    def figure(self) -> FigureFields | None:
+        """The fields of the item's chart for this variant."""
+        figure = self.item.figure
+        return self.attempt(lambda: self.exhibit(figure, ("figure",)), "figure") if figure else None
+
+    def exhibit(self, fields: _Fields, steps: Steps) -> _Fields:
+        """A table or chart with the texts that hold templates rendered for this variant."""
+        templates = [(at[len(steps) :], each) for at, each in self.item.exhibit_templates if at[: len(steps)] == steps]
+        if not templates:
+            return fields
+        raw: Any = self.item.tree.data
+        for step in steps:
+            raw = raw[step]
+        return _filled(type(fields), raw, [(at, each.render(self.seen)) for at, each in templates])
+
+    def attempt(self, make: Callable[[], _Made], *steps: str | int) -> _Made | None:
+        """What is made, or None and a fault at the steps."""
         try:
             return make()
+        except TemplateFault as error:
+            self.faults.append(Fault("template", error.full_message + self.where, self.item.at(*steps)))
+            return None
         except ContentError as error:
             self.faults.append(Fault("unsolvable", error.full_message + self.where, self.item.at(*steps)))
-            return otherwise
+            return None
 
     @property
     def where(self) -> str:
@@ -191,7 +228,7 @@ class _Maker:
             if asked is None:
                 break  # what follows would complain about what this part did not give
             made.append(asked)
-            self.names = self.names.union(*(self.kept.names(each, self.item) for each in _alternatives(part)))
+            self.names = self.names.union(*(self.kept.names(each, self.item) for each in alternatives(part)))
             setting = replace(setting, earlier=(*setting.earlier, asked.solved))
         return tuple(made)
 
@@ -222,12 +259,12 @@ class _Maker:
     def newly_solved(self, part: Part, label: str, setting: Setting) -> PartAsked | None:
         """One part, worked out."""
         try:
-            solved = part.task.solve(self.fields(part), setting)
+            solved = part.task.solve(self.fields(part, setting), setting)
         except TemplateFault as error:
             self.faults.append(Fault("template", error.full_message + self.where, part.source))
             return None
         except ContentError as error:
-            self.faults.append(Fault("unsolvable", error.full_message + self.where, part.source))
+            self.faults.append(Fault("unsolvable", error.full_message + self.where, self.place(part, error.word)))
             return None
         had = setting.had
         return PartAsked(
@@ -237,23 +274,46 @@ class _Maker:
             tuple(self.wording(note, part.source) for note in solved.notes),
         )
 
-    def fields(self, part: Part) -> Any:
-        """The part's fields, with the texts that hold templates rendered for this variant."""
+    def place(self, part: Part, word: str) -> Source:
+        """Where a word stands in a part, if it stands there alone; else the part's own place."""
+        texts = dict(texts_in(part.raw))
+        ready = set(self.seen)
+        texts.update((steps, each.render(self.seen)) for steps, each in part.templates if each.names <= ready)
+        found = next((steps for steps, text in texts.items() if word and text.strip() == word), None)
+        return part.source if found is None else self.item.at(*part.steps, *found)
+
+    def fields(self, part: Part, setting: Setting) -> Any:
+        """The part's fields, with the texts that hold templates rendered for this variant.
+
+        How the answer is rounded depends on the other fields, so the wordings that say it come last.
+        """
         if not part.templates:
             return part.fields
-        data = _copied(part.raw)
-        for steps, template in part.templates:
-            _put(data, steps, template.render(self.seen))
-        try:
-            return part.task.fields.model_validate(data)
-        except ValidationError as error:
-            raise ContentError(str(error.errors()[0]["msg"])) from error
+        late = [each for each in part.templates if ROUNDING in each[1].names - set(self.seen)]
+        texts = [(at, each.render(self.seen)) for at, each in part.templates if (at, each) not in late]
+        fields: Any = _filled(part.task.fields, part.raw, texts)
+        if not late:
+            return fields
+        said = rounding_said(getattr(fields, part.task.name), fields, setting)
+        texts += [(at, each.render({**self.seen, ROUNDING: said})) for at, each in late]
+        return _filled(part.task.fields, part.raw, texts)
 
     def wording(self, text: str, place: Source) -> Prose:
         """A task's wording as prose; faults in it stand at the part."""
         made, faults = prose_of(text)
         self.faults += [Fault("text", fault.message + self.where, place) for fault in faults]
         return made
+
+
+def _filled(model: type[_Fields], raw: Any, texts: Sequence[tuple[Steps, str]]) -> _Fields:
+    """The fields read again, with the texts at their steps in place."""
+    data = _copied(raw)
+    for steps, text in texts:
+        _put(data, steps, text)
+    try:
+        return model.model_validate(data)
+    except ValidationError as error:
+        raise ContentError(str(error.errors()[0]["msg"])) from error
 
 
 def _copied(data: Any) -> Any:
@@ -271,15 +331,6 @@ def _put(data: Any, steps: tuple[str | int, ...], text: str) -> None:
 def species_of(variant: Variant) -> tuple[Species, ...]:
     """The species that a variant draws."""
     return tuple(value for _, value in variant.values if isinstance(value, Species))
-
-
-def parts_of(item: Item) -> tuple[Part, ...]:
-    """The parts of an item, alternatives among them."""
-    return tuple(each for part in item.parts for each in _alternatives(part))
-
-
-def _alternatives(part: Part | Alternative) -> tuple[Part, ...]:
-    return part.parts if isinstance(part, Alternative) else (part,)
 
 
 def wordings(item: Item) -> int:

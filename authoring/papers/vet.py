@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
@@ -11,8 +12,18 @@ from authoring.papers.questions import Kept, Question, Terms, question, species_
 from authoring.papers.variants import Variant, enumerated
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import shipped
-from authoring.specs.item import Item, read_item
+from authoring.specs.item import Item, parts_of, read_item
 from authoring.specs.plan import read_plan
+from authoring.tasks.solved import Solved
+
+# A wording that speaks of rounding in any of the usual words (common practice, no source).
+_ROUNDING_SAID = re.compile(
+    r"\{\{[^}]*\brounding\b|\bround|\bsignificant|\bfigures?\b|\bdecimals?\b|\bplaces?\b|\bdigits?\b|\bnearest\b"
+    r"|\b[sd]\.? ?[fp]\b",
+    re.IGNORECASE,
+)
+# Names in single braces, as in the tasks' own default wordings.
+_IN_VAIN = re.compile(r"(?<![{_^\\])\{(?:species|electron|rounding)\}(?!\})")
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,7 +71,7 @@ def vetted_plan(path: Path) -> list[Vetted]:
         plan = read_plan(path)
     except ShieldwrightError as error:
         return [Vetted(path.stem, 0, 0, faults_of(error))]
-    terms = Terms(plan.practice, plan.slips, plan.figures)
+    terms = Terms(plan.practice, plan.slips, plan.figures, new=True)
     return [vetted(item, terms, fixed) for item, fixed in zip(plan.items, plan.fixed, strict=True)]
 
 
@@ -70,7 +81,7 @@ def vetted_item(path: Path) -> Vetted:
         item = read_item(path)
     except ShieldwrightError as error:
         return Vetted(path.stem, 0, 0, faults_of(error))
-    return vetted(item, Terms(published(), shipped()), {})
+    return vetted(item, Terms(published(), shipped(), new=True), {})
 
 
 def faults_of(error: ShieldwrightError) -> tuple[Fault, ...]:
@@ -113,6 +124,7 @@ class _Seen:
         self.marks: set[int] = set()
         self.lengths: set[int] = set()
         self.differing: set[str] = set()
+        self.unrounded: set[int] = set()
 
     def add(self, variant: Variant, made: Question | tuple[Fault, ...]) -> None:
         """Take note of one variant."""
@@ -124,6 +136,7 @@ class _Seen:
         self.sound += 1
         self.marks.add(made.marks)
         self.lengths.add(sum(len(part.solved.steps) for part in made.parts))
+        self.unrounded.update(at for at, solved in enumerate(_solved_parts(made)) if _is_rounded(solved))
         self.differing.update(species.label for species in species_of(variant) if species.differs)
 
     def vetted(self, possible: int) -> Vetted:
@@ -149,11 +162,35 @@ class _Seen:
             labels = ", ".join(sorted(self.differing))
             words = f"measurement and the taught rule give different configurations for {labels}"
             found.append(self.weak("rule-differs", words, "draw"))
+        return found + self.wording_weaknesses()
+
+    def wording_weaknesses(self) -> list[Fault]:
+        """What the items' own wordings leave out or hold in vain."""
+        found: list[Fault] = []
+        for at, part in enumerate(parts_of(self.item)):
+            for turn, text in enumerate(part.fields.ask):
+                steps = (*part.steps, "ask", turn)
+                if at in self.unrounded and not _ROUNDING_SAID.search(text):
+                    words = "this wording does not say how to round; write, say, `Give your answer {{ rounding }}.`"
+                    found.append(self.weak("no-rounding", words, *steps))
+                for braces in _IN_VAIN.findall(text):
+                    words = f"{braces} is printed as it stands; drawn values and rounding take two braces: {{{{ … }}}}"
+                    found.append(self.weak("single-braces", words, *steps))
         return found
 
-    def weak(self, code: str, message: str, step: str) -> Fault:
-        """A weakness at a key of the item."""
-        return Fault(code, message, self.item.at(step), "weakness")
+    def weak(self, code: str, message: str, *steps: str | int) -> Fault:
+        """A weakness at a place of the item."""
+        return Fault(code, message, self.item.at(*steps), "weakness")
+
+
+def _solved_parts(made: Question) -> tuple[Solved, ...]:
+    """What was solved, in the order of `parts_of`."""
+    return tuple(each.solved for part in made.parts for each in part.choices or (part,))
+
+
+def _is_rounded(solved: Solved) -> bool:
+    """Whether the default wording of the part says how to round."""
+    return solved.task in ("calculate", "correct") and bool(solved.steps) and solved.steps[-1].line.rounded
 
 
 def with_count(first: Fault, count: int) -> Fault:

@@ -10,6 +10,7 @@ from authoring.atoms.species import Species
 from authoring.atoms.subshell import Subshell
 from authoring.shielding.practice import Practice
 from authoring.shielding.quantities.configuration import configuration_of
+from authoring.specs.drawn_names import HAS
 
 
 @dataclass(frozen=True, slots=True)
@@ -19,10 +20,8 @@ class SpeciesView:
     species: Species
     practice: Practice
 
-    TEMPLATE_NAMES = (
-        "name", "symbol", "label", "z", "charge", "electrons", "period", "group", "block", "unpaired", "outermost",
-        "configuration", "full_configuration", "differs", "size_of_charge", "mass_number",
-    )  # fmt: skip
+    TEMPLATE_KIND = "species"
+    TEMPLATE_NAMES = tuple(HAS["species"])
 
     @property
     def markup(self) -> str:
@@ -119,7 +118,8 @@ class ElectronView:
 
     subshell: Subshell
 
-    TEMPLATE_NAMES = ("n", "l", "letter", "label")
+    TEMPLATE_KIND = "electron"
+    TEMPLATE_NAMES = tuple(HAS["electron"])
 
     @property
     def markup(self) -> str:
@@ -156,7 +156,8 @@ class Written:
 
     text: str
 
-    TEMPLATE_NAMES = ()
+    TEMPLATE_KIND = "configuration"
+    TEMPLATE_NAMES = tuple(HAS["configuration"])
 
     @property
     def markup(self) -> str:

@@ -10,6 +10,7 @@ from typing import Any, Literal
 from pydantic import Field
 
 from authoring.faults import ContentError, Fault, FaultsFound, Source, suggestion
+from authoring.specs.drawn_names import ROUNDING, Names
 from authoring.specs.draws import Draw, SpeciesDraw, draw_model, rests_on
 from authoring.specs.template import Condition, Template, compile_condition, compile_text
 from authoring.specs.template_expressions import TemplateFault
@@ -63,10 +64,10 @@ class ItemFields(Strict):
 
 @dataclass(frozen=True, slots=True)
 class Part:
-    """One part as written: its task, its fields, and the templates in them.
+    """One part as written, at `steps` of the file: its task, its fields, and the templates in them.
 
-    `raw` is the part's data; where `templates` is not empty, the texts at those steps are rendered per variant
-    and the fields read again.
+    `raw` is the part's data; where `templates` is not empty, the texts at those steps (from the part's own) are
+    rendered per variant and the fields read again.
     """
 
     task: Task
@@ -74,6 +75,7 @@ class Part:
     raw: Mapping[str, Any]
     templates: tuple[tuple[Steps, Template], ...]
     source: Source = field(compare=False)
+    steps: Steps = field(compare=False, default=())
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,7 +88,10 @@ class Alternative:
 
 @dataclass(frozen=True, slots=True)
 class Item:
-    """One question: its draws, conditions, story and parts; `name` is the file's stem."""
+    """One question: its draws, conditions, story and parts; `name` is the file's stem.
+
+    `exhibit_templates` are those in the texts of `given` and `figure`, at their steps from the file's top.
+    """
 
     name: str
     title: str
@@ -103,6 +108,7 @@ class Item:
     path: str
     tree: Tree = field(compare=False, repr=False)
     text: str = field(compare=False, repr=False, default="")
+    exhibit_templates: tuple[tuple[Steps, Template], ...] = ()
 
     def at(self, *steps: str | int) -> Source:
         """The place of a value in the file."""
@@ -112,14 +118,15 @@ class Item:
 def read_item(path: Path) -> Item:
     """Read an item file. Raises FaultsFound with everything that is wrong in it, UsageError if unreadable."""
     tree = read_tree(path)
-    return item_from(tree, path.stem)
+    return item_from(tree, path.stem, new=True)
 
 
 class _Reader:
     """Gathers the faults of one item."""
 
-    def __init__(self, tree: Tree) -> None:
+    def __init__(self, tree: Tree, new: bool) -> None:
         self.tree = tree
+        self.new = new
         self.faults: list[Fault] = []
         self.broken: set[str] = set()  # draws with faults of their own: what rests on them is not complained about
 
@@ -142,9 +149,12 @@ class _Reader:
             return None
 
 
-def item_from(tree: Tree, name: str) -> Item:
-    """An item from its tree. Raises FaultsFound."""
-    reader = _Reader(tree)
+def item_from(tree: Tree, name: str, new: bool = False) -> Item:
+    """An item from its tree. Raises FaultsFound.
+
+    `new`: it is not out of a record of a set, so that what sets were once made with is a fault all the same.
+    """
+    reader = _Reader(tree, new)
     fields, faults = validated(ItemFields, tree.data, tree)
     reader.faults += faults
     data = tree.data if isinstance(tree.data, dict) else {}
@@ -168,6 +178,7 @@ def item_from(tree: Tree, name: str) -> Item:
         parts=parts,
         path=tree.path,
         tree=tree,
+        exhibit_templates=_exhibit_templates(reader, data, draws),
     )
     _check_names(reader, item)
     _check_given(reader, item)
@@ -248,7 +259,25 @@ def _part(reader: _Reader, spec: object, steps: Steps) -> Part | None:
     templates = tuple(
         (inner, reader.template(text, *steps, *inner)) for inner, text in texts_in(spec) if "{{" in text or "{%" in text
     )
-    return None if fields is None else Part(task, fields, spec, templates, source)
+    return None if fields is None else Part(task, fields, spec, templates, source, steps)
+
+
+def _exhibit_templates(
+    reader: _Reader, data: Mapping[str, Any], draws: Mapping[str, Draw]
+) -> tuple[tuple[Steps, Template], ...]:
+    """The templates in the texts of tables and chart. Sets once had braces there as they stand; records keep them."""
+    found = []
+    for key in ("given", "figure"):
+        for steps, text in texts_in(data.get(key), (key,)):
+            if "{{" not in text and "{%" not in text:
+                continue
+            had = len(reader.faults)
+            template = reader.template(text, *steps)
+            if not reader.new and (len(reader.faults) > had or not template.names <= set(draws)):
+                del reader.faults[had:]
+                continue
+            found.append((steps, template))
+    return tuple(found)
 
 
 def texts_in(data: object, at: Steps = ()) -> Iterator[tuple[Steps, str]]:
@@ -263,21 +292,29 @@ def texts_in(data: object, at: Steps = ()) -> Iterator[tuple[Steps, str]]:
             yield from texts_in(value, (*at, index))
 
 
+def parts_of(item: Item) -> tuple[Part, ...]:
+    """The parts of an item, alternatives among them."""
+    return tuple(each for part in item.parts for each in alternatives(part))
+
+
+def alternatives(part: Part | Alternative) -> tuple[Part, ...]:
+    """The parts of which a candidate answers one; a part alone."""
+    return part.parts if isinstance(part, Alternative) else (part,)
+
+
 def _check_names(reader: _Reader, item: Item) -> None:
-    """Every name used in a text or condition is drawn."""
-    drawn = tuple(item.draws)
-    used: list[tuple[frozenset[str], Source]] = [
-        (item.story.names, reader.tree.at(("story",))),
-        (item.caution.names, reader.tree.at(("caution",))),
-    ]
-    used += [(each.names, reader.tree.at(("notes", at))) for at, each in enumerate(item.notes)]
-    used += [(each.names, reader.tree.at(("keep", at))) for at, each in enumerate(item.keep)]
-    for part in item.parts:
-        for each in part.parts if isinstance(part, Alternative) else (part,):
-            used += [(template.names, each.source) for _, template in each.templates]
-    for names, place in used:
-        for name in sorted(names - reader.broken.union(drawn)):
-            reader.fault("undefined", f"{name!r} is not drawn{suggestion(name, drawn)}", place)
+    """Every name used in a text or condition is drawn, and has what is asked of it."""
+    names = Names(item.draws, reader.broken, reader.tree, reader.new)
+    used: list[tuple[Template | Condition, Steps]] = [(item.story, ("story",)), (item.caution, ("caution",))]
+    used += [(each, ("notes", at)) for at, each in enumerate(item.notes)]
+    used += [(each, ("keep", at)) for at, each in enumerate(item.keep)]
+    used += [(template, steps) for steps, template in item.exhibit_templates]
+    for text, steps in used:
+        reader.faults += names.faults(text, steps)
+    for part in parts_of(item):
+        for inner, template in part.templates:
+            more = (ROUNDING,) if inner[0] == "ask" and part.task.rounds else ()
+            reader.faults += names.faults(template, (*part.steps, *inner), more)
 
 
 def _check_given(reader: _Reader, item: Item) -> None:

@@ -18,6 +18,7 @@ from markdown_it.token import Token
 from authoring.faults import ContentError
 from authoring.specs.chemistry import read_chemistry
 from authoring.specs.formulas import MathFault, read_math
+from authoring.specs.texts import unify_breaks
 from authoring.working.nodes import Block, Emphasis, Inline, ListBlock, Math, Paragraph, Plain, Prose
 
 _LONGEST = 50_000
@@ -39,6 +40,7 @@ def read_prose(text: str) -> tuple[Prose, tuple[ProseFault, ...]]:
     """The blocks of a text, and what is wrong with it (the faulty spots are left as plain text)."""
     if len(text) > _LONGEST:
         return (), (ProseFault(1, 1, f"a text has at most {_LONGEST:,} characters"),)
+    text = unify_breaks(text)  # quoted YAML can hold breaks of other kinds, and Markdown counts them
     reader = _Reader(text.split("\n"))
     prose = reader.blocks(iter(_markdown().parse(text)), 0)
     return prose, tuple(sorted(set(reader.faults), key=lambda fault: (fault.line, fault.column)))

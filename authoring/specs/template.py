@@ -10,7 +10,7 @@ from __future__ import annotations
 import re
 import warnings
 from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 from typing import TypeVar
 
@@ -18,14 +18,15 @@ from jinja2 import StrictUndefined, TemplateError, TemplateSyntaxError, nodes
 from jinja2.parser import Parser
 from jinja2.sandbox import ImmutableSandboxedEnvironment
 
-from authoring.specs.template_expressions import Evaluate, ExpressionCompiler, TemplateFault, as_bool, refused
+from authoring.specs.template_expressions import Evaluate, ExpressionCompiler, TemplateFault, Use, as_bool, refused
 from authoring.specs.template_filters import NotPrintable, printed
 
-__all__ = ["Condition", "Rendered", "Template", "TemplateFault", "compile_condition", "compile_text"]
+__all__ = ["Condition", "Rendered", "Template", "TemplateFault", "Use", "compile_condition", "compile_text"]
 
 _T = TypeVar("_T")
 _LONGEST = 50_000
 _MOST_IFS = 20
+_BRACES = re.compile(r"\{[{%]")
 _BLOCKS = re.compile(r"\{%[-+]?\s*(if|endif)\b")
 
 # Appends to the pieces of a text: (text, line of the template that it comes from).
@@ -43,10 +44,15 @@ class Rendered:
 
 @dataclass(frozen=True, slots=True)
 class Template:
-    """A compiled text and the free names that it needs."""
+    """A compiled text, and the names that it needs."""
 
-    names: frozenset[str]
+    uses: tuple[Use, ...]
     _write: _Write
+
+    @property
+    def names(self) -> frozenset[str]:
+        """The free names."""
+        return frozenset(use.root for use in self.uses)
 
     def render(self, bindings: Mapping[str, object]) -> str:
         """The text with its values in place, escaped as Markdown. Raises TemplateFault with the line."""
@@ -73,9 +79,9 @@ class Template:
 
 @dataclass(frozen=True, slots=True)
 class Condition:
-    """A compiled condition and the free names that it needs."""
+    """A compiled condition, and the names that it needs."""
 
-    names: frozenset[str]
+    uses: tuple[Use, ...]
     text: str
     _evaluate: Evaluate
 
@@ -97,7 +103,7 @@ def compile_text(text: str) -> Template:
     tree = _parsed(text, lambda: _environment().parse(text))
     compiler = ExpressionCompiler()
     write = _Writers(compiler).block(tree.body, 0)
-    return Template(frozenset(compiler.names), write)
+    return Template(_placed(compiler.uses, text), write)
 
 
 def compile_condition(text: str) -> Condition:
@@ -108,7 +114,22 @@ def compile_condition(text: str) -> Condition:
     expression = _parsed(text, lambda: _read_expression(text))
     compiler = ExpressionCompiler()
     evaluate = compiler.compile(expression)
-    return Condition(frozenset(compiler.names), text, evaluate)
+    return Condition(_placed(compiler.uses, text), text, evaluate)
+
+
+def _placed(uses: Sequence[Use], text: str) -> tuple[Use, ...]:
+    """The uses with their columns: Jinja keeps lines only, so the words are looked for in their line."""
+    lines = text.split("\n")
+    return tuple(replace(use, column=_column(use, lines[min(use.line, len(lines)) - 1])) for use in uses)
+
+
+def _column(use: Use, line: str) -> int:
+    # The first such word of the line, in braces if the line has any: prose may have the word as well.
+    braces = _BRACES.search(line)
+    start = braces.end() if braces else 0
+    words = r"\s*\.\s*".join(map(re.escape, (use.root, *use.chain)))
+    found = re.compile(rf"(?<![\w.]){words}(?!\w)").search(line, start)
+    return (found.end() - len((use.root, *use.chain)[-1]) if found else 0) + 1
 
 
 def _check_length(text: str) -> None:

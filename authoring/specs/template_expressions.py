@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import operator
 from collections.abc import Callable, Iterable, Mapping
+from dataclasses import dataclass
 from decimal import Decimal
 from math import isfinite
 from typing import Any
@@ -62,11 +63,21 @@ def as_bool(value: object, line: int) -> bool:
     raise TemplateFault(f"a condition must be yes or no; this is {_kind(value)} (compare it, as in `x > 0`)", line)
 
 
+@dataclass(frozen=True, slots=True)
+class Use:
+    """A free name in a text, or what is asked of it: `metal` with the chain (`outermost`, `label`); where it stands."""
+
+    root: str
+    chain: tuple[str, ...]
+    line: int
+    column: int = 1
+
+
 class ExpressionCompiler:
-    """Compiles expressions and collects the free names in `names`."""
+    """Compiles expressions and collects the free names, and what is asked of them, in `uses`."""
 
     def __init__(self) -> None:
-        self.names: set[str] = set()
+        self.uses: list[Use] = []
         self._compilers: Mapping[type[nodes.Node], Callable[..., Evaluate]] = {
             nodes.Name: self._name,
             nodes.Const: self._const,
@@ -97,7 +108,7 @@ class ExpressionCompiler:
 
     def _name(self, node: nodes.Name, depth: int) -> Evaluate:
         name, line = node.name, node.lineno
-        self.names.add(name)
+        self.uses.append(Use(name, (), line))
 
         def evaluate(bindings: Mapping[str, object]) -> object:
             try:
@@ -121,6 +132,9 @@ class ExpressionCompiler:
         inner, name, line = self.compile(node.node, depth), node.attr, node.lineno
         if name.startswith("_"):
             raise TemplateFault(f"names with a leading underscore ({name}) are private", line)
+        root, chain = _chain(node)
+        if root:
+            self.uses.append(Use(root, chain, line))
         return lambda bindings: _attribute_of(inner(bindings), name, line)
 
     def _item(self, node: nodes.Getitem, depth: int) -> Evaluate:
@@ -212,6 +226,16 @@ class ExpressionCompiler:
         return evaluate
 
 
+def _chain(node: nodes.Getattr) -> tuple[str, tuple[str, ...]]:
+    """`metal.outermost.label` as its name and its chain; no name where it begins with something else."""
+    chain: list[str] = []
+    inner: nodes.Node = node
+    while isinstance(inner, nodes.Getattr):
+        chain.insert(0, inner.attr)
+        inner = inner.node
+    return (inner.name, tuple(chain)) if isinstance(inner, nodes.Name) else ("", ())
+
+
 def _attribute_of(value: object, name: str, line: int) -> object:
     allowed: tuple[str, ...] = getattr(type(value), "TEMPLATE_NAMES", ())
     if name not in allowed:
@@ -235,7 +259,7 @@ def _kind(value: object) -> str:
         return "a list"
     if value is None:
         return "nothing"
-    name = type(value).__name__.strip("_").lower()
+    name = getattr(type(value), "TEMPLATE_KIND", type(value).__name__.strip("_").lower())
     return f"{'an' if name[:1] in 'aeiou' else 'a'} {name}"
 
 

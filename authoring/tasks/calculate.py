@@ -106,4 +106,5 @@ TASK = Task(
     fields=Calculate,
     solve=solve,
     example="- calculate: screening constant\n  of: V\n  electron: 4s\n  marks: 3\n",
+    rounds=True,
 )

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from pydantic import Field
 
 from authoring.faults import ContentError
+from authoring.shielding.quantities.configuration import configuration_of
 from authoring.shielding.quantity import PointRule, Target, quantity
 from authoring.shielding.solve import Step, work
 from authoring.slips.catalogue import Slip
@@ -16,7 +17,7 @@ from authoring.tasks.fields import TargetFields, Word
 from authoring.tasks.points import Candidate, chosen
 from authoring.tasks.setting import Setting, rounding_of, rounding_words, target_of
 from authoring.tasks.several import FIRST_WRONG, closing, scattered
-from authoring.tasks.slipped import steps_under, values_under
+from authoring.tasks.slipped import practice_with, steps_under, values_under
 from authoring.tasks.solved import Answer, ShownWorking, Solved, Wrong
 from authoring.tasks.task import Task
 from authoring.tasks.wording import noun, space_for, worded
@@ -31,7 +32,11 @@ class Correct(TargetFields):
     """`correct: effective nuclear charge`: a working with one slip in it is printed."""
 
     correct: Word = Field(description="the quantity that the flawed working leads to")
-    slip: Word | None = Field(None, description="the slip in the working; left out: one that the variant settles")
+    slip: Word | None = Field(
+        None,
+        description="the slip in the working; left out: one that the variant settles. Whoever has it must still "
+        "find an electron in the subshell that is asked about",
+    )
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,15 +70,37 @@ def flawed(target: Target, right: tuple[Step, ...], slip: Slip, setting: Setting
 def fault_of(target: Target, right: tuple[Step, ...], part: Correct, setting: Setting, rounding: Rounding) -> Flawed:
     """The working with the slip that the part names, or with one of the likelier ones, settled by the variant."""
     if part.slip is not None:
-        return flawed(target, right, setting.slips.named(part.slip), setting, rounding)
+        fault = flawed(target, right, setting.slips.named(part.slip), setting, rounding)
+        _keeps_the_electron(target, fault.slip, setting)
+        return fault
     value = right[-1].line.value
     names = [name for name, under in values_under(target, setting.practice, setting.slips).items() if under != value]
     likely = names[:LIKELY]
     start = scattered(target.quantity, target.about) % max(1, len(likely))
     for name in (*likely[start:], *likely[:start], *names[LIKELY:]):
         with contextlib.suppress(ContentError):
-            return flawed(target, right, setting.slips.named(name), setting, rounding)
-    raise ContentError(f"no slip changes {quantity(target.quantity).name} of {target.about}")
+            fault = flawed(target, right, setting.slips.named(name), setting, rounding)
+            break
+    else:
+        raise ContentError(f"no slip changes {quantity(target.quantity).name} of {target.about}")
+    # Which slip a variant settles on never changes: papers of older sets are marked by it.
+    _keeps_the_electron(target, fault.slip, setting)
+    return fault
+
+
+def _keeps_the_electron(target: Target, slip: Slip, setting: Setting) -> None:
+    """Raise ContentError where whoever has the slip finds no electron in the subshell that a new part names."""
+    if not setting.new or target.electron is None:
+        return
+    under = practice_with(slip, setting.practice)
+    configuration = configuration_of(target.species, under)
+    if not configuration.count(target.electron):
+        raise ContentError(
+            f"under the slip {slip.name!r}, {target.species.label} is {configuration.short()} and has no "
+            f"{target.electron.label} electron, so the flawed working would be about another electron; name another "
+            "slip under `slip`, or keep to species where it leaves the electron",
+            slip.name,
+        )
 
 
 def solve(part: Correct, setting: Setting) -> Solved:
@@ -129,4 +156,5 @@ TASK = Task(
     fields=Correct,
     solve=solve,
     example="- correct: effective nuclear charge\n  of: V\n  electron: 4s\n  slip: self counted\n  marks: 3\n",
+    rounds=True,
 )

@@ -18,6 +18,8 @@ from authoring.tasks.wording import worded
 from authoring.working.nodes import Words
 
 NOT = "not"
+# Words that a sentence may begin with, and that go on after the word Explain in small letters.
+_OPENING = ("why", "how", "what", "which", "when", "where", "whether")
 _MARKUP = str.maketrans("", "", "`*$")
 
 
@@ -46,13 +48,27 @@ class Explain(PartFields):
     """`explain: why …`, with what earns each mark under `rubric`, and what does not under `not`."""
 
     explain: Annotated[str, Field(min_length=1, max_length=2_000)] = Field(
-        description="what is to be explained, as it goes on after the word Explain"
+        description="what is to be explained, as it goes on after the word Explain; or a whole question that ends in ?"
     )
     rubric: Annotated[tuple[Annotated[RubricPoint, _OrText()], ...], Field(min_length=1, max_length=20)] = Field(
         description="one entry a mark: a text, or `point` and `mark`"
     )
     not_: Several = Field((), alias="not", description="what earns no mark, though it may be met")
     model: Text = Field("", description="a model answer; left out: the points of the rubric")
+
+
+def sentence(text: str) -> str:
+    """What is printed: a whole question as it stands; `why …` and `Why …` as `Explain why ….`"""
+    what = text.strip()
+    if what.endswith("?") or "? " in what:
+        return what[:1].upper() + what[1:]
+    what = what.rstrip(".")
+    first, _, rest = what.partition(" ")
+    if first.lower() == "explain":
+        what = rest
+    elif first.lower() in _OPENING:
+        what = first.lower() + what[len(first) :]
+    return f"Explain {what}."
 
 
 def solve(part: Explain, setting: Setting) -> Solved:
@@ -67,12 +83,11 @@ def solve(part: Explain, setting: Setting) -> Solved:
     model = part.model or "; ".join(entry.point.rstrip(".;") for entry in part.rubric)
     plain = " ".join(model.translate(_MARKUP).split())
     rubric = [(point.code, point.what) for point in points] + [(NOT, text) for text in part.not_]
-    what = part.explain.rstrip().rstrip(".")
     return Solved(
         task="explain",
         quantity="",
         targets=(),
-        ask=worded(part, setting.turn, f"Explain {what}."),
+        ask=worded(part, setting.turn, sentence(part.explain)),
         steps=(),
         answer=Answer("text", model, Words(plain), model),
         points=points,

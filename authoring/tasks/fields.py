@@ -116,7 +116,7 @@ class SchemeEntry(Strict):
 class PartFields(Strict):
     """What every part takes, whatever its task."""
 
-    ask: Several = Field((), description="the wording, instead of the default; several: one is chosen per variant")
+    ask: Several = Field((), description="the wording, instead of the default; several: papers take turns with them")
     marks: Annotated[int, Between(1, 40)] | None = Field(
         None, description="marks of the part: one per step of the working, the weightiest steps first"
     )

@@ -137,4 +137,5 @@ TASK = Task(
         "  slips: [self counted, 1.00 for all inner, 0.85 for all inner]\n"
     ),
     turns=True,
+    rounds=True,
 )

@@ -25,7 +25,8 @@ class Setting:
 
     `bindings`: drawn variables by name. `earlier`: the parts before this one, solved. `turn` is the place of the
     paper in the set (0, 1, …): what is balanced over papers turns with it. `figures` is the plan's choice of
-    significant figures, or None. `pools`: what each variable was drawn from.
+    significant figures, or None. `pools`: what each variable was drawn from. `new`: the part is written now and not
+    made again from a record, so that what older records may hold is refused.
     """
 
     practice: Practice
@@ -35,6 +36,7 @@ class Setting:
     figures: int | None = None
     slips: Slips = field(default_factory=shipped)
     pools: Mapping[str, tuple[object, ...]] = field(default_factory=dict)
+    new: bool = False
 
     @property
     def known(self) -> dict[Target, Value]:
@@ -146,6 +148,14 @@ def rounding_of(what: Quantity, part: TargetFields, setting: Setting) -> Roundin
         return Rounding(places=part.places)
     figures = part.figures or (setting.figures if what.rounding.figures else None)
     return Rounding(figures=figures) if figures else what.rounding
+
+
+def rounding_said(name: str, part: TargetFields, setting: Setting) -> str:
+    """How the part's quantity is rounded, for a wording. Raises ContentError where its answer is no number."""
+    what = quantity(name)
+    if not what.numeric:
+        raise ContentError(f"{what.name} is not a number: leave {{{{ rounding }}}} out")
+    return rounding_words(rounding_of(what, part, setting))
 
 
 def rounding_words(rounding: Rounding) -> str:

@@ -19,8 +19,9 @@ class Task:
     """A command word: the fields its parts take, and how a part is solved.
 
     `fields` is the pydantic model of a part; its field named like the task (with `_` for a space) holds what the
-    part asks for. `turns`: what is printed depends on the place of the paper in the set. `solve(part, setting)` raises
-    ContentError where the variant cannot be asked this.
+    part asks for. `turns`: what is printed depends on the place of the paper in the set. `rounds`: the default
+    wording says how the answer is rounded, and `{{ rounding }}` says it in an item's own. `solve(part, setting)`
+    raises ContentError where the variant cannot be asked this.
     """
 
     name: str
@@ -29,6 +30,7 @@ class Task:
     solve: Callable[[Any, Setting], Solved]
     example: str
     turns: bool = False
+    rounds: bool = False
 
 
 # One module each in authoring/tasks/, which defines TASK.

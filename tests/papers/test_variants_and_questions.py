@@ -3,16 +3,24 @@
 from __future__ import annotations
 
 import time
+from dataclasses import replace
 
 import pytest
 from papers_help import TANK, TERMS, questions, read, variants
 
+from authoring.atoms.species import Species
 from authoring.faults import FaultsFound
 from authoring.papers import variants as variants_room
 from authoring.papers.questions import Kept, prose_of, question
 from authoring.papers.variants import enumerated
+from authoring.papers.views import view
 from authoring.shielding.practice import published
+from authoring.specs.drawn_names import HAS
+from authoring.specs.item import item_from
+from authoring.specs.yaml_tree import parse_tree
+from authoring.working.nodes import Paragraph
 from authoring.working.prose_text import prose_text
+from authoring.working.text import to_text
 
 
 def faults(text: str, fixed: dict[str, str] | None = None) -> list[tuple[str, str, str]]:
@@ -132,9 +140,163 @@ def test_what_is_wrong_in_prose_stands_at_its_line_of_the_item():
 
 
 def test_a_mistake_in_a_template_stands_at_its_line_of_the_item():
-    text = TANK.replace("dissolved {{ metal.name }}", "{{ metal.name }}.\n  And {{ outer.colour }}")
+    text = TANK.replace("dissolved {{ metal.name }}", "{{ metal.name }}.\n  And {{ outer.n > 3 }}")
     found = faults(text)
     assert {(code, place) for code, place, _ in found} == {("template", "tank.yaml:8:3")}
+
+
+TABLE = TANK + """given:
+  - caption: Of {{ metal.name }}
+    header: [species, "charge of {{ metal }}"]
+    rows:
+      - ["{{ metal }}", "{{ metal.z }}"]
+      - [Zn, "30"]
+    source: a card about {{ metal.name }}
+  - quantity: effective nuclear charge
+    of: ["{{ metal.symbol }}", Zn]
+figure:
+  chart: effective nuclear charge
+  of: [Na-Cl]
+  caption: "For {{ metal.name }}: `3p` of {{ metal | a }} atom{% if metal.z > 22 %}, heavy{% endif %}"
+"""
+
+
+def test_tables_and_charts_are_templates():
+    vanadium = questions(TABLE)[2]
+    typed, computed = vanadium.tables
+    assert [prose_text((Paragraph(cell),)) for cell in typed.header] == ["species", "charge of V"]
+    assert [[prose_text((Paragraph(cell),)) for cell in row] for row in typed.rows] == [["V", "23"], ["Zn", "30"]]
+    assert prose_text((Paragraph(typed.caption),)) == "Of vanadium"
+    assert prose_text((Paragraph(typed.origin),)) == "a card about vanadium"
+    assert [to_text(row[0][0].node) for row in computed.rows] == ["V", "Zn"]
+    assert prose_text(vanadium.figure_caption) == "For vanadium: 3p of a V atom, heavy"
+    assert prose_text(questions(TABLE)[0].figure_caption) == "For scandium: 3p of an Sc atom"
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "expected"),
+    [
+        ("Of {{ metal.name }}", "Of {{ meta.name }}", ("undefined", "tank.yaml:14:20")),
+        ("card about {{ metal.name }}", "card about {{ metal.nmae }}", ("template", "tank.yaml:19:35")),
+        ('"{{ metal.z }}"]', '"{{ metal.z "]', ("template", "tank.yaml:17:26")),
+        ("For {{ metal.name }}", "For {{ metal.name | shout }}", ("template", "tank.yaml:25:13")),
+        ("Of {{ metal.name }}", "Of {{ metal.z > 3 }}", ("template", "tank.yaml:14:5")),
+    ],
+)
+def test_mistakes_in_tables_and_charts_stand_at_their_places(old, new, expected):
+    assert old in TABLE
+    assert {(code, place) for code, place, _ in faults(TABLE.replace(old, new))} == {expected}
+
+
+def test_braces_that_an_older_record_printed_as_they_stand_do_not_stop_it():
+    text = TABLE.replace("Of {{ metal.name }}", "Of {{ steel }}").replace('"{{ metal.z }}"', '"{{ metal.z "')
+    item = item_from(parse_tree(text, "tank.yaml"), "tank")
+    first = next(iter(enumerated(item, published()).variants))
+    (typed, _) = question(first, TERMS).tables
+    assert prose_text((Paragraph(typed.caption),)) == "Of {{ steel }}"
+    assert prose_text((Paragraph(typed.rows[0][1]),)) == "{{ metal.z"
+    with pytest.raises(FaultsFound):
+        read(text)
+
+
+ENERGY = "  - calculate: orbital energy\n    ask: 'The energy, {{ rounding }}, of {{ metal }}.'\n"
+
+
+@pytest.mark.parametrize(
+    ("more", "figures", "words"),
+    [
+        ("", None, "to 4 significant figures"),
+        ("", 3, "to 3 significant figures"),
+        ("    places: 1\n", 3, "to 1 decimal place"),
+        ("    figures: 2\n", None, "to 2 significant figures"),
+    ],
+)
+def test_a_wording_says_how_to_round(more, figures, words):
+    """The words are those of the default wording, whoever settles the rounding: the part, the plan or the quantity."""
+    variant = variants(TANK + ENERGY + more).variants[0]
+    terms = replace(TERMS, figures=figures)
+    assert prose_text(question(variant, terms).parts[-1].ask) == f"The energy, {words}, of Sc."
+    default = TANK + ENERGY.split("    ask:")[0] + more
+    assert words in prose_text(question(variants(default).variants[0], terms).parts[-1].ask)
+
+
+@pytest.mark.parametrize(
+    ("part", "expected", "words"),
+    [
+        ("decide: first electron lost\n    ask: 'Which, {{ rounding }}?'", ("undefined", "tank.yaml:14:21"), "`ask`"),
+        ("calculate: orbital energy\n    notes: '{{ rounding }}'", ("undefined", "tank.yaml:14:16"), "`ask`"),
+        (
+            "calculate: configuration\n    ask: 'Write it {{ rounding }}.'",
+            ("unsolvable", "tank.yaml:13:5"),
+            "configuration is not a number",
+        ),
+    ],
+)
+def test_rounding_stands_where_something_is_rounded(part, expected, words):
+    found = faults(f"{TANK}  - {part}\n")
+    assert {(code, place) for code, place, _ in found} == {expected}
+    assert words in found[0][2]
+
+
+def test_a_variable_called_rounding_is_the_authors_own():
+    text = TANK.replace("draw:\n", "draw:\n  rounding: {words: [twice]}\n") + ENERGY
+    assert prose_text(questions(text)[0].parts[-1].ask) == "The energy, twice, of Sc."
+
+
+@pytest.mark.parametrize(
+    ("condition", "expected", "words"),
+    [
+        ('metal.blok == "d"', ("condition", "tank.yaml:7:11"), "a species has nothing called 'blok'; did you mean 'bl"),
+        ("metal.z > 20 or metal.zz > 2", ("condition", "tank.yaml:7:27"), "nothing called 'zz'"),
+        ("metal.outermost.lable == '4s'", ("condition", "tank.yaml:7:21"), "an electron has nothing called 'lable'"),
+        ("outer.z > 2", ("condition", "tank.yaml:7:11"), "one of: n, l, letter, label"),
+        ("metal.name.size > 2", ("condition", "tank.yaml:7:16"), "text has nothing called 'size'"),
+        ("metal.configuration.core == 'Ar'", ("condition", "tank.yaml:7:25"), "a configuration has nothing called"),
+        ("meta.z > 3", ("undefined", "tank.yaml:7:5"), "'meta' is not drawn; did you mean 'metal'?"),
+    ],
+)
+def test_what_a_drawn_value_does_not_have_is_found_at_reading(condition, expected, words):
+    with pytest.raises(FaultsFound) as caught:
+        read(TANK.replace("story:", f"keep:\n  - {condition}\nstory:"))
+    ((code, place, said),) = [(each.code, str(each.source), each.message) for each in caught.value.faults]
+    assert (code, place) == expected
+    assert words in said
+
+
+@pytest.mark.parametrize("value", ["V2+", "Co", "Ce"])
+def test_drawn_values_have_what_reading_allows_and_nothing_else(value):
+    """The table of names agrees with the values themselves, and with the kinds that they are said to be."""
+    kinds = {str: "text", int: "number", bool: "yes or no"}
+    species = view(Species.parse(value), published())
+    for kind, thing in zip(HAS, (species, species.outermost, species.configuration), strict=False):
+        assert type(thing).TEMPLATE_KIND == kind  # noqa: SIM300 - what is found is compared with what is said
+        for name, gives in HAS[kind].items():
+            got = type(getattr(thing, name))
+            assert (kinds.get(got) or got.TEMPLATE_KIND) == gives
+
+
+@pytest.mark.parametrize("condition", ["metal.z > 3 or metal.blok == 'd'"])
+def test_an_older_record_with_a_name_never_asked_for_is_read(condition):
+    text = TANK.replace("story:", f"keep:\n  - {condition}\nstory:")
+    item = item_from(parse_tree(text, "tank.yaml"), "tank")
+    assert len(enumerated(item, published()).variants) == 7
+
+
+@pytest.mark.parametrize(
+    ("part", "place"),
+    [
+        ("calculate: effective age", "tank.yaml:13:16"),
+        ("calculate: screening constant\n    of: Vx", "tank.yaml:14:9"),
+        ("calculate: screening constant\n    electron: 7s", "tank.yaml:14:15"),
+        ("correct: orbital energy\n    slip: self cuonted", "tank.yaml:14:11"),
+        ("correct: screening constant\n    slip: '{{ slip }}'\n    electron: 4s\n    of: Ti", "tank.yaml:15:11"),
+    ],
+)
+def test_a_word_that_a_part_cannot_use_stands_at_its_place(part, place):
+    text = f"{TANK}  - {part}\n"
+    if "slip }}" in part:
+        text = text.replace("draw:\n", "draw:\n  slip: {words: [d filled before next s]}\n")
+    assert {(code, where) for code, where, _ in faults(text)} == {("unsolvable", place)}
 
 
 def test_alternatives_must_be_worth_the_same():

@@ -64,6 +64,40 @@ def test_working_of_very_different_length_is_a_weakness():
     assert [code for code, _, _ in findings(vet(without))] == ["unequal-marks", "unequal-working"]
 
 
+ENERGY = "  - calculate: orbital energy\n"
+
+
+@pytest.mark.parametrize(
+    ("ask", "codes"),
+    [
+        ("Find the energy.", ["no-rounding"]),
+        ("Find the energy in $Z_{eff}^2$ rounds of work on {{ metal }}.", []),
+        ("Find the energy, {{ rounding }}.", []),
+        ("Find the energy to 4 s.f. in eV.", []),
+        ("Give the energy to the nearest eV.", []),
+        ("Find the energy of {species}, {rounding}.", ["single-braces", "single-braces"]),
+    ],
+)
+def test_a_wording_that_says_nothing_about_rounding_is_weak(ask, codes):
+    text = TANK + ENERGY + f"    ask:\n      - '{ask}'\n      - 'Find the energy to 3 figures.'\n"
+    result = vet(text)
+    assert sorted(findings(result)) == [(code, "weakness", 7) for code in codes]
+    assert {str(each.source) for each in result.findings} <= {"tank.yaml:15:9"}
+
+
+def test_rounding_need_not_be_said_where_nothing_is_rounded_or_the_default_says_it():
+    assert findings(vet(TANK + "    ask: Find the charge.\n")) == []
+    assert findings(vet(TANK + ENERGY)) == []
+
+
+def test_alternatives_are_told_apart_in_what_they_leave_unsaid():
+    text = TANK + (
+        "  - either:\n      - calculate: orbital energy\n        marks: 1\n        ask: Find it to 3 figures.\n"
+        "      - calculate: radius of maximum density\n        marks: 1\n        ask: Find the radius.\n"
+    )
+    assert [(each.code, str(each.source)) for each in vet(text).findings] == [("no-rounding", "tank.yaml:19:14")]
+
+
 def test_every_wording_is_vetted_not_only_the_first():
     text = TANK + "    ask: ['Find it.', 'Find it for `Xq`.']\n"
     result = vet(text)

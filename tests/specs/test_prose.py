@@ -200,7 +200,8 @@ MARKDOWNISH = st.text(st.sampled_from("ab Z3+-*_`$\\{}()[]^=./<>#&\n\t1d2s≈σ'
 @example("$$$")
 @example("`")
 @example("\\")
+@example("\r$")
 def test_any_text_gives_prose_and_faults_inside_it(text):
     _, faults = read_prose(text)
-    count = text.count("\n") + 1
+    count = text.replace("\r\n", "\n").replace("\r", "\n").count("\n") + 1
     assert all(1 <= fault.line <= count and fault.column >= 1 for fault in faults)

@@ -102,6 +102,26 @@ def test_free_names_are_listed():
     assert compile_text("{{ a.b }}{% if c and 1 in [d] %}{{ e|count('x') }}{% endif %}").names == set("acde")
 
 
+def test_names_and_what_is_asked_of_them_have_their_places():
+    text = "Of a:\n{{ a.b.c }} and {{ a . d }}{% if e.f > g %}{{ a|count('x') }}{% endif %}"
+    found: dict[tuple[str, tuple[str, ...]], tuple[int, int]] = {}
+    for use in compile_text(text).uses:
+        found.setdefault((use.root, use.chain), (use.line, use.column))
+    assert found == {
+        ("a", ("b", "c")): (2, 8),
+        ("a", ("b",)): (2, 6),
+        ("a", ("d",)): (2, 24),
+        ("e", ("f",)): (2, 36),
+        ("a", ()): (2, 4),
+        ("e", ()): (2, 34),
+        ("g", ()): (2, 40),
+    }
+    assert [(use.root, use.chain, use.column) for use in compile_condition("x.y == 1").uses] == [
+        ("x", (), 1),
+        ("x", ("y",), 3),
+    ]
+
+
 def test_lines_of_the_rendered_text_know_their_lines_in_the_template():
     text = "a\n{% if yes %}\nhigh {{ n }}\nand\n{% else %}\nlow\n{% endif %}\nend\n\nlast"
     rendered = compile_text(text).render_lines(BOUND)

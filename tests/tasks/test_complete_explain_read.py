@@ -128,6 +128,26 @@ def test_blanks_are_numbered_as_romans_did() -> None:
 EXPLAIN = "- explain: why `4s` is lost before `3d`.\n  rubric:\n    - it lies further out\n"
 
 
+@pytest.mark.parametrize(
+    ("text", "printed"),
+    [
+        ("why `4s` is lost first", "Explain why `4s` is lost first."),
+        ("Why `4s` is lost first.", "Explain why `4s` is lost first."),
+        ("Explain how it is lost.", "Explain how it is lost."),
+        ("explain how it is lost", "Explain how it is lost."),
+        ("Why is `4s` lost first?", "Why is `4s` lost first?"),
+        ("why is `4s` lost first? ", "Why is `4s` lost first?"),
+        ("Why is it lost? Name the shells.", "Why is it lost? Name the shells."),
+        ("`4s` is lost first: why?", "`4s` is lost first: why?"),
+        ("Slater's rules in one sentence", "Explain Slater's rules in one sentence."),
+        ("why", "Explain why."),
+    ],
+)
+def test_what_is_to_be_explained_reads_as_a_sentence(text: str, printed: str) -> None:
+    data = yaml.safe_dump([{"explain": text, "rubric": ["it lies further out"]}])
+    assert solved(data).ask == printed
+
+
 def test_each_point_of_the_rubric_earns_a_mark() -> None:
     part = solved(EXPLAIN + "    - {point: its charge is smaller, mark: M}\n  not: [it is filled first]\n")
     assert part.ask == "Explain why `4s` is lost before `3d`."

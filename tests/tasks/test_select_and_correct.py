@@ -172,6 +172,35 @@ def test_left_open_the_variant_settles_the_slip() -> None:
     assert len(set(chosen.values())) > 1
 
 
+def test_a_slip_that_empties_the_named_subshell_is_refused() -> None:
+    """With 3d filled before 4s, titanium is [Ar] 3d4 (by hand): nobody with that slip has a 4s electron."""
+    drawn = {"metal": Species.parse("Ti")}
+    text = CORRECT.replace("outer", "4s") + "  slip: d filled before next s\n"
+    with pytest.raises(ContentError, match=r"Ti is \[Ar\] 3d4 and has no 4s electron") as caught:
+        solved(text, bindings=drawn, new=True)
+    assert caught.value.word == "d filled before next s"
+    # The 3d electrons are there; and an electron that is not named is the outermost, whatever that is.
+    for electron in ("3d", "outermost"):
+        part = solved(text.replace("4s\n", f"{electron}\n"), bindings=drawn, new=True)
+        assert part.wrong[0].slips == ("d filled before next s",)
+
+
+def test_what_an_older_record_holds_is_made_again() -> None:
+    """Sets made before the refusal are marked by the working that they printed."""
+    text = CORRECT.replace("outer", "4s") + "  slip: d filled before next s\n"
+    part = solved(text, bindings={"metal": Species.parse("Ti")})
+    assert part.wrong[0].slips == ("d filled before next s",)
+    assert part.answer.value == (1, Decimal("3.15"))  # 22 − (0.35 + 10 × 0.85 + 10), by hand
+
+
+def test_left_open_too_the_slip_must_leave_the_electron() -> None:
+    """V3+ has two 3d electrons; lost in the wrong order they are 4s2 (by hand)."""
+    text = "- correct: screening constant\n  of: V3+\n  electron: 3d\n"
+    assert solved(text).wrong[0].slips == ("d lost before s",)
+    with pytest.raises(ContentError, match=r"V3\+ is \[Ar\] 4s2 and has no 3d electron"):
+        solved(text, new=True)
+
+
 def test_marks_beyond_the_three_are_refused() -> None:
     assert codes(solved(CORRECT + "  slip: self counted\n  marks: 1\n")) == ["B1"]
     with pytest.raises(ContentError, match="marks: 4"):
