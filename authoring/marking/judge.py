@@ -141,19 +141,20 @@ def _as_the_key(solved: Solved, lines: Sequence[Written], policy: Policy) -> tup
     """The lines of the key that stand in the script as the key prints them, and the script's other lines."""
     found: set[int] = set()
     others: list[Written] = []
-    printed: dict[str, int] = {}
     for written in lines:
-        if not any(sign in written.text for sign in "=:→≈"):
-            others.append(written)
-            continue
-        printed = printed or _printed(solved)
-        text = written.text.replace(",", ".") if policy.decimal == "comma" else written.text
-        at = printed.get(_plain(text))
+        at = line_of_key(solved, written.text, policy)
         if at is None:
             others.append(written)
         else:
             found.add(at)
     return found, others
+
+
+def line_of_key(solved: Solved, text: str, policy: Policy) -> int | None:
+    """The place of the line of the key that a text is, as the key prints it; None where it is none of them."""
+    if not any(sign in text for sign in "=:→≈"):
+        return None
+    return _printed(solved).get(_plain(text.replace(",", ".") if policy.decimal == "comma" else text))
 
 
 def _printed(solved: Solved) -> dict[str, int]:

@@ -3,13 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from authoring.faults import Fault, suggestion
 from authoring.marking.judge import best_judged
 from authoring.marking.judgement import Judgement, Own
 from authoring.marking.recall import PaperToMark, QuestionToMark, RecalledSet
+from authoring.marking.sayings import Sayings
 from authoring.marking.scripts import Script, resolve_label
+from authoring.tasks.solved import Solved
 
 # Judgements remembered before the memory is let go: some 100 MB at the most.
 MOST_REMEMBERED = 100_000
@@ -35,15 +37,17 @@ class _Node:
     """What the candidate has after some parts of a question, and the judgements made from there."""
 
     own: Own
-    next: dict[tuple[str, ...], tuple[Judgement, _Node]]
+    next: dict[tuple[str, ...], tuple[Judgement, _Node]] = field(default_factory=dict)
+    alike: dict[object, tuple[Judgement, _Node]] = field(default_factory=dict)
 
 
 class Judge:
-    """Judges scripts of one set. The same lines after the same lines are judged once."""
+    """Judges scripts of one set. Lines that say the same, after lines that say the same, are judged once."""
 
     def __init__(self, of: RecalledSet) -> None:
         self.set = of
         self._roots: dict[tuple[object, ...], _Node] = {}
+        self._sayings = Sayings(of.policy)
         self._remembered = 0
 
     def script(self, script: Script) -> tuple[ScriptJudged | None, tuple[Fault, ...]]:
@@ -67,23 +71,34 @@ class Judge:
         node = self._root(question)
         for label, alternatives in question:
             texts = answers.get(label, _UNANSWERED)
-            hit = node.next.get(texts)
-            if hit is None:
-                own = node.own.copy()
-                judgement = best_judged(label, alternatives, texts, own, self.set.terms, self.set.policy)
-                hit = node.next[texts] = (judgement, _Node(own, {}))
-                self._remembered += 1
-            judgement, node = hit
+            judgement, node = node.next.get(texts) or self._judged(node, label, alternatives, texts)
             yield judgement
+
+    def _judged(
+        self, node: _Node, label: str, alternatives: tuple[Solved, ...], texts: tuple[str, ...]
+    ) -> tuple[Judgement, _Node]:
+        told = self._sayings.told(alternatives, texts)
+        hit = node.alike.get(told) if told is not None else None
+        if hit is None:
+            own = node.own.copy()
+            judgement = best_judged(label, alternatives, texts, own, self.set.terms, self.set.policy)
+            hit = (judgement, _Node(own))
+            # A remark quotes the very words.
+            if told is not None and not judgement.remarks:
+                node.alike[told] = hit
+        node.next[texts] = hit
+        self._remembered += 1
+        return hit
 
     def _root(self, question: QuestionToMark) -> _Node:
         if self._remembered > MOST_REMEMBERED:
             self._roots.clear()
+            self._sayings = Sayings(self.set.policy)
             self._remembered = 0
         # Variants that differ in what no part rests on have the same parts: the set keeps them, so ids do not change.
         key = tuple([(label, *map(id, alternatives)) for label, alternatives in question])
         if key not in self._roots:
-            self._roots[key] = _Node(Own(), {})
+            self._roots[key] = _Node(Own())
         return self._roots[key]
 
 

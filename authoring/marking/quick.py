@@ -26,9 +26,9 @@ _SYMBOLS = {
 }
 
 
-def read_quick(text: str) -> Written | None:
-    """The chain of a plain arithmetic line, or None where the text is anything else."""
-    found = _LINE.fullmatch(text)
+def read_quick(line: str, text: str = "") -> Written | None:
+    """The chain of a plain arithmetic line, or None where it is anything else; `text`: as the candidate wrote it."""
+    found = _LINE.fullmatch(line)
     if found is None:
         return None
     label, screening, body, unit = found.groups()
@@ -59,7 +59,7 @@ def read_quick(text: str) -> Written | None:
         factors[-1] = _measured(factors[-1], unit)
     terms.append((sign, _product(factors)))
     members.append(_member(terms, relation))
-    return finished(text, tuple(members))
+    return finished(text or line, tuple(members))
 
 
 def _product(factors: list[Node]) -> Node:

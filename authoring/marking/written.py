@@ -63,8 +63,8 @@ def _read(text: str, decimal: DecimalMark) -> Written:
         return Written(text, "blank", struck=struck)
     if plain.lower() in _OK:
         return Written(text, "ok", struck=struck)
-    if (found := _quick_again(plain, decimal)) is not None:
-        return replace(found, text=text, struck=struck)
+    if (found := _quick_again(plain, text, decimal)) is not None:
+        return replace(found, struck=struck) if struck else found
     about, rest = split_about(plain)
     found = _read_plain(rest, decimal)
     return replace(
@@ -72,10 +72,10 @@ def _read(text: str, decimal: DecimalMark) -> Written:
     )
 
 
-def _quick_again(plain: str, decimal: DecimalMark) -> Written | None:
+def _quick_again(plain: str, text: str, decimal: DecimalMark) -> Written | None:
     """The plain forms once more, with one typography and decimal points, and without what leads over to them."""
     pointed, remark = with_points(_LEADING_OVER.sub("", plain, count=1), decimal)
-    found = read_quick(pointed)
+    found = read_quick(pointed, text)
     return replace(found, remark=remark) if found is not None and remark else found
 
 
