@@ -36,7 +36,7 @@ REMINDER = (
 @click.option("--replace", is_flag=True, help="Write a set anew over one that has no marks yet.")
 @click.option("--split", is_flag=True, help="One PDF per candidate as well.")
 @click.option("--allow-repeats", is_flag=True, help="More papers than there are different ones.")
-@click.option("--time-limit", type=click.IntRange(1, 3600), default=600, show_default=True, help="Seconds for TeX.")
+@click.option("--time-limit", type=click.IntRange(1, 86_400), help="Seconds for TeX. Default: 600, or 0.6 a paper.")
 @json_option
 def command(
     plan: str,
@@ -47,7 +47,7 @@ def command(
     replace: bool,
     split: bool,
     allow_repeats: bool,
-    time_limit: int,
+    time_limit: int | None,
     as_json: bool,
 ) -> None:
     """Set the papers of PLAN (a path or a shipped name): sheets, key, record and blank script form.

@@ -6,14 +6,16 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
+from authoring.faults import OutsideError
 from authoring.papers.assemble import PaperSet, Progress
+from authoring.press.glyphs import place_of
 from authoring.press.html_documents import write_key_html, write_sheets_html
 from authoring.press.latex_documents import key_job, sheets_job
 from authoring.press.split import split_pdf
-from authoring.press.tex import PACKAGES, Compiling, Engine, Job, find_engine
+from authoring.press.tex import PACKAGES, Compiling, Engine, Job, NoGlyph, find_engine
 
 SPLIT_FOLDER = "candidates"
-_TIME_LIMIT = 120.0
+_TIME_LIMIT = 600.0
 # A thousand papers of a few pages take TeX a minute at most; ten times that on a slow machine.
 _TIME_PER_PAPER = 0.6
 _ROUNDS = 4  # each paper is written four times: sheet and key, in LaTeX and in HTML
@@ -37,13 +39,28 @@ def publish(
     progress: Progress | None = None,
     time_limit: float | None = None,
 ) -> Published:
-    """Write everything printed of a set into an existing folder; `time_limit` in seconds is for each PDF.
+    """Write everything printed of a set into an existing folder; `time_limit` in seconds is for each PDF (without it,
+    600, or 0.6 for each paper where that is more).
 
     `split` also writes `candidates/CODE.pdf` for each paper. Without TeX the PDFs are left out and `missing` says so.
     Raises OutsideError where TeX fails, ContentError for a text that cannot be printed or an unknown language.
     """
     tick = _counted(progress, len(paper_set.papers) * _ROUNDS)
-    limit = time_limit or _TIME_LIMIT + _TIME_PER_PAPER * len(paper_set.papers)
+    limit = time_limit or max(_TIME_LIMIT, _TIME_PER_PAPER * len(paper_set.papers))
+    try:
+        jobs, files = _printed(paper_set, into, limit, tick)
+    except NoGlyph as error:
+        place = place_of(error.character, paper_set)
+        raise OutsideError(f"{place}: {error.message}" if place else error.message) from error
+    missing = _missing(jobs)
+    if split and "sheets.pdf" in files:
+        files += _split(paper_set, into)
+    engines = tuple((job.name, job.engine) for job in jobs)
+    return Published(tuple(sorted(files)), engines, missing)
+
+
+def _printed(paper_set: PaperSet, into: Path, limit: float, tick: Callable[[], None]) -> tuple[list[Job], list[str]]:
+    """Both documents in every form; TeX sets the sheets while the key is still being written."""
     jobs: list[Job] = []
     files = ["sheets.html", "key.html"]
     with Compiling(into, limit) as compiling:
@@ -55,11 +72,7 @@ def publish(
         write_sheets_html(paper_set, into / "sheets.html", tick)
         write_key_html(paper_set, into / "key.html", tick)
         files += [path.name for path in compiling.finished()]
-    missing = _missing(jobs)
-    if split and "sheets.pdf" in files:
-        files += _split(paper_set, into)
-    engines = tuple((job.name, job.engine) for job in jobs)
-    return Published(tuple(sorted(files)), engines, missing)
+    return jobs, files
 
 
 def page_ranges(pdf: Path) -> dict[str, tuple[int, int]]:

@@ -41,6 +41,14 @@ _NO_FILE = re.compile(r"File [`']([^'/]+\.(?:sty|cls|def|fd|tfm))' not found")
 _EPOCH = "946684800"  # 2000-01-01: any fixed moment will do
 
 
+class NoGlyph(OutsideError):
+    """No installed font has a character."""
+
+    def __init__(self, message: str, character: str) -> None:
+        super().__init__(message)
+        self.character = character
+
+
 @dataclass(frozen=True, slots=True)
 class Job:
     """One document to set: its source, the stem of its PDF and the engine."""
@@ -179,8 +187,13 @@ def _run(
             process.stdout.close()
         process.wait()
     if process.returncode:
-        raise OutsideError(explain(output.decode("utf-8", errors="replace"), job.source, job.engine))
+        raise _failed(output.decode("utf-8", errors="replace"), job)
     return output
+
+
+def _failed(log: str, job: Job) -> OutsideError:
+    message, lost = explain(log, job.source, job.engine), _LOST.search(log)
+    return NoGlyph(message, lost[1]) if lost else OutsideError(message)
 
 
 def _last_origin(source: str) -> str:
