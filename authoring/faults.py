@@ -127,7 +127,10 @@ def render_faults(faults: Iterable[Fault]) -> str:
     """All faults in file order, one after the other, and a closing count where there are several."""
     ordered = sorted(faults, key=_place)
     text = "\n".join(render_fault(fault) for fault in ordered)
-    return text if len(ordered) < 2 else f"{text}\n{len(ordered)} faults"
+    weak = sum(fault.severity == "weakness" for fault in ordered)
+    counts = [(len(ordered) - weak, "fault", "faults"), (weak, "weakness", "weaknesses")]
+    closing = ", ".join(f"{count} {one if count == 1 else several}" for count, one, several in counts if count)
+    return text if len(ordered) < 2 else f"{text}\n{closing}"
 
 
 def _place(fault: Fault) -> tuple[str, int, int]:

@@ -24,14 +24,14 @@ def table_of(table: GivenTable, setting: Setting) -> TableBlock:
 
 
 def inlines(text: str) -> tuple[Inline, ...]:
-    """Item text of one paragraph as inlines. Raises ContentError for faults in it."""
+    """Item text of one paragraph as inlines. Raises ContentError, with the text as its word, for faults in it."""
     prose, faults = read_prose(text)
     if faults:
-        raise ContentError(faults[0].message)
+        raise ContentError(faults[0].message, text)
     children: tuple[Inline, ...] = ()
     for block in prose:
         if not isinstance(block, Paragraph):
-            raise ContentError("a cell or caption is one paragraph")
+            raise ContentError("a cell or caption is one paragraph", text)
         children += block.children
     return children
 

@@ -174,13 +174,29 @@ class _Maker:
 
     def exhibit(self, fields: _Fields, steps: Steps) -> _Fields:
         """A table or chart with the texts that hold templates rendered for this variant."""
-        templates = [(at[len(steps) :], each) for at, each in self.item.exhibit_templates if at[: len(steps)] == steps]
+        templates = self.templates_below(steps)
         if not templates:
             return fields
-        raw: Any = self.item.tree.data
+        return _filled(type(fields), self.data_at(steps), [(at, each.render(self.seen)) for at, each in templates])
+
+    def templates_below(self, steps: Steps) -> list[tuple[Steps, Template]]:
+        """The templates of a table or chart, at their steps from its own."""
+        return [(at[len(steps) :], each) for at, each in self.item.exhibit_templates if at[: len(steps)] == steps]
+
+    def data_at(self, steps: Steps) -> Any:
+        """A piece of the item as written."""
+        data: Any = self.item.tree.data
         for step in steps:
-            raw = raw[step]
-        return _filled(type(fields), raw, [(at, each.render(self.seen)) for at, each in templates])
+            data = data[step]
+        return data
+
+    def place(self, word: str, steps: Steps, templates: Sequence[tuple[Steps, Template]]) -> Source:
+        """Where a word is the whole of a text in the piece of the item at `steps`; else the place of the piece."""
+        texts = dict(texts_in(self.data_at(steps)))
+        ready = set(self.seen)
+        texts.update((at, each.render(self.seen)) for at, each in templates if each.names <= ready)
+        found = next((at for at, text in texts.items() if word and text.strip() == word.strip()), ())
+        return self.item.at(*steps, *found)
 
     def attempt(self, make: Callable[[], _Made], *steps: str | int) -> _Made | None:
         """What is made, or None and a fault at the steps."""
@@ -190,7 +206,8 @@ class _Maker:
             self.faults.append(Fault("template", error.full_message + self.where, self.item.at(*steps)))
             return None
         except ContentError as error:
-            self.faults.append(Fault("unsolvable", error.full_message + self.where, self.item.at(*steps)))
+            place = self.place(error.word, steps, self.templates_below(steps))
+            self.faults.append(Fault("unsolvable", error.full_message + self.where, place))
             return None
 
     @property
@@ -264,23 +281,16 @@ class _Maker:
             self.faults.append(Fault("template", error.full_message + self.where, part.source))
             return None
         except ContentError as error:
-            self.faults.append(Fault("unsolvable", error.full_message + self.where, self.place(part, error.word)))
+            place = self.place(error.word, part.steps, part.templates)
+            self.faults.append(Fault("unsolvable", error.full_message + self.where, place))
             return None
         had = setting.had
         return PartAsked(
             label,
-            self.wording(solved.ask, part.source),
+            self.asked(solved.ask, part),
             replace(solved, steps=told_apart(solved.steps, had)),
             tuple(self.wording(note, part.source) for note in solved.notes),
         )
-
-    def place(self, part: Part, word: str) -> Source:
-        """Where a word stands in a part, if it stands there alone; else the part's own place."""
-        texts = dict(texts_in(part.raw))
-        ready = set(self.seen)
-        texts.update((steps, each.render(self.seen)) for steps, each in part.templates if each.names <= ready)
-        found = next((steps for steps, text in texts.items() if word and text.strip() == word), None)
-        return part.source if found is None else self.item.at(*part.steps, *found)
 
     def fields(self, part: Part, setting: Setting) -> Any:
         """The part's fields, with the texts that hold templates rendered for this variant.
@@ -297,6 +307,11 @@ class _Maker:
         said = rounding_said(getattr(fields, part.task.name), fields, setting)
         texts += [(at, each.render({**self.seen, ROUNDING: said})) for at, each in late]
         return _filled(part.task.fields, part.raw, texts)
+
+    def asked(self, text: str, part: Part) -> Prose:
+        """The wording of a part; faults in an item's own stand in it."""
+        own = part.fields.ask
+        return self.plain(text, *part.steps, "ask", self.turn % len(own)) if own else self.wording(text, part.source)
 
     def wording(self, text: str, place: Source) -> Prose:
         """A task's wording as prose; faults in it stand at the part."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any
 
@@ -12,7 +12,7 @@ from authoring.papers.questions import Kept, Question, Terms, question, species_
 from authoring.papers.variants import Variant, enumerated
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import shipped
-from authoring.specs.item import Item, parts_of, read_item
+from authoring.specs.item import Item, parts_of, read_item, texts_in
 from authoring.specs.plan import read_plan
 from authoring.tasks.solved import Solved
 
@@ -22,8 +22,8 @@ _ROUNDING_SAID = re.compile(
     r"|\b[sd]\.? ?[fp]\b",
     re.IGNORECASE,
 )
-# Names in single braces, as in the tasks' own default wordings.
-_IN_VAIN = re.compile(r"(?<![{_^\\])\{(?:species|electron|rounding)\}(?!\})")
+# The keys of an item whose texts may hold templates.
+_TEXTS = ("story", "caution", "notes", "given", "figure", "parts")
 
 
 @dataclass(frozen=True, slots=True)
@@ -141,7 +141,7 @@ class _Seen:
 
     def vetted(self, possible: int) -> Vetted:
         """What was found in all of them."""
-        found = [(with_count(fault, count), count) for fault, count in self.faults.values()]
+        found = [(counted(fault, count, possible), count) for fault, count in self.faults.values()]
         found += [(weakness, self.sound) for weakness in self.weaknesses()]
         findings, counts = tuple(each for each, _ in found), tuple(count for _, count in found)
         return Vetted(self.item.name, possible, self.sound, findings, min(self.marks, default=0), counts)
@@ -165,17 +165,28 @@ class _Seen:
         return found + self.wording_weaknesses()
 
     def wording_weaknesses(self) -> list[Fault]:
-        """What the items' own wordings leave out or hold in vain."""
-        found: list[Fault] = []
+        """What the item's own wordings leave out, and names in single braces."""
+        found = self.single_braces()
         for at, part in enumerate(parts_of(self.item)):
             for turn, text in enumerate(part.fields.ask):
                 steps = (*part.steps, "ask", turn)
                 if at in self.unrounded and not _ROUNDING_SAID.search(text):
                     words = "this wording does not say how to round; write, say, `Give your answer {{ rounding }}.`"
                     found.append(self.weak("no-rounding", words, *steps))
-                for braces in _IN_VAIN.findall(text):
-                    words = f"{braces} is printed as it stands; drawn values and rounding take two braces: {{{{ … }}}}"
-                    found.append(self.weak("single-braces", words, *steps))
+        return found
+
+    def single_braces(self) -> list[Fault]:
+        """Names that mean something in two braces and stand in one, anywhere in the item's text."""
+        drawn = "|".join(map(re.escape, (*self.item.draws, "species", "electron", "rounding")))
+        # Not in formulas, where braces hold an index together, nor in what is a template already.
+        one = re.compile(rf"(?<![{{%_^\\}}]){{\s*(?:{drawn})(?:\.\w+)*\s*}}(?!}})")
+        found = []
+        for steps, text in texts_in(self.item.tree.data):
+            for braces in one.finditer(text) if steps[0] in _TEXTS else ():
+                before = text[: braces.start()].split("\n")
+                place = self.item.tree.block_line(steps, len(before) - 1, len(before[-1]) + 1)
+                words = f"{braces[0]} is printed as it stands; drawn values and rounding take two braces: {{{{ … }}}}"
+                found.append(Fault("single-braces", words, place, "weakness"))
         return found
 
     def weak(self, code: str, message: str, *steps: str | int) -> Fault:
@@ -191,6 +202,14 @@ def _solved_parts(made: Question) -> tuple[Solved, ...]:
 def _is_rounded(solved: Solved) -> bool:
     """Whether the default wording of the part says how to round."""
     return solved.task in ("calculate", "correct") and bool(solved.steps) and solved.steps[-1].line.rounded
+
+
+def counted(first: Fault, count: int, possible: int) -> Fault:
+    """A fault of some variants, told once; one of all variants has none of them to name."""
+    words, here, _ = first.message.rpartition(" (in the variant ")
+    if count == possible > 1 and here:
+        return replace(first, message=f"{words} (in every variant)")
+    return with_count(first, count)
 
 
 def with_count(first: Fault, count: int) -> Fault:

@@ -97,6 +97,9 @@ class Names:
         if use.root in kinds or use.chain:
             return None
         tail = rounding_hint() if use.root == ROUNDING else suggestion(use.root, tuple(kinds))
+        having = next((f"{name}.{use.root}" for name, kind in kinds.items() if use.root in HAS[kind]), "")
+        if having:
+            tail = f"; a drawn value's own is written after its name: {having}"
         return Fault("undefined", f"{use.root!r} is not drawn{tail}", self._place(use, steps))
 
     def _lacking(self, use: Use, steps: Steps, kinds: Mapping[str, str], text: Template | Condition) -> Fault | None:

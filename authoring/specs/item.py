@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Any, Literal
@@ -11,10 +11,10 @@ from pydantic import Field
 
 from authoring.faults import ContentError, Fault, FaultsFound, Source, suggestion
 from authoring.specs.drawn_names import ROUNDING, Names
-from authoring.specs.draws import Draw, SpeciesDraw, draw_model, rests_on
+from authoring.specs.draws import TELLING, Draw, SpeciesDraw, draw_model, rests_on
 from authoring.specs.template import Condition, Template, compile_condition, compile_text
 from authoring.specs.template_expressions import TemplateFault
-from authoring.specs.validate import validated
+from authoring.specs.validate import keys_of, validated
 from authoring.specs.yaml_tree import Tree, read_tree
 from authoring.tasks.fields import PartFields, Several, Strict, Text, Word, Words
 from authoring.tasks.task import Task, tasks
@@ -145,7 +145,8 @@ class _Reader:
         try:
             return compile_condition(text)
         except ContentError as error:
-            self.faults.append(Fault.from_error("condition", error, self.tree.at(steps)))
+            at = (error.line - 1, error.column) if isinstance(error, TemplateFault) else (0, 1)
+            self.faults.append(Fault.from_error("condition", error, self.tree.block_line(steps, *at)))
             return None
 
 
@@ -197,6 +198,12 @@ def _draws(reader: _Reader, data: object) -> dict[str, Draw]:
             reader.fault("draw-name", f"{name[:40]!r}: name a variable with small letters, digits and _", place)
             continue
         shaped = {"among": spec} if isinstance(spec, list | str) and spec else spec
+        mistaken = _mistaken_kind(shaped)
+        if mistaken:
+            words = f"no key {mistaken!r} here{suggestion(mistaken, tuple(TELLING))}"
+            reader.fault("unknown-key", words, reader.tree.key_at(("draw", name, mistaken)))
+            reader.broken.add(name)
+            continue
         model = draw_model(shaped)
         draw, faults = validated(model, shaped, reader.tree, ("draw", name))
         reader.faults += faults
@@ -211,6 +218,14 @@ def _draws(reader: _Reader, data: object) -> dict[str, Draw]:
                 reader.fault("undefined", f"{name} rests on {other!r}, which is not drawn before it{hint}", place)
         found[name] = draw
     return found
+
+
+def _mistaken_kind(spec: object) -> str:
+    """The key of a draw that is nearly one of those which tell its kind, or nothing."""
+    if not isinstance(spec, dict) or draw_model(spec) is not SpeciesDraw:
+        return ""
+    known = keys_of(SpeciesDraw)
+    return next((key for key in spec if key not in known and is_near(key, TELLING) and not is_near(key, known)), "")
 
 
 def _parts(reader: _Reader, data: object, drawn: frozenset[str]) -> tuple[Part | Alternative, ...]:
@@ -248,7 +263,7 @@ def _part(reader: _Reader, spec: object, steps: Steps) -> Part | None:
     named = [key for key in spec if key in tasks()]
     if len(named) != 1:
         known = tuple(tasks())
-        unknown = next((key for key in spec if suggestion(key, known).startswith("; did")), "")
+        unknown = next((key for key in spec if is_near(key, known)), "")
         hint = suggestion(unknown, known) if unknown else "; its tasks: " + ", ".join(known)
         words = "a part has one task" if named else "this part has no task"
         reader.fault("no-task", f"{words}{hint}", source)
@@ -278,6 +293,11 @@ def _exhibit_templates(
                 continue
             found.append((steps, template))
     return tuple(found)
+
+
+def is_near(word: str, known: Iterable[str]) -> bool:
+    """Whether a word is nearly one of those known."""
+    return suggestion(word, tuple(known)).startswith("; did")
 
 
 def texts_in(data: object, at: Steps = ()) -> Iterator[tuple[Steps, str]]:
@@ -324,5 +344,7 @@ def _check_given(reader: _Reader, item: Item) -> None:
             reader.fault("given", "a table has a `quantity` with `of`, or typed `rows`", place)
         if table.rows and not table.source:
             reader.fault("given", "typed data need a `source`", place)
-        if table.rows and any(len(row) != len(table.header) for row in table.rows):
-            reader.fault("given", f"every row needs {len(table.header)} cells, one for each head", place)
+        for row, cells in enumerate(table.rows):
+            if len(cells) != len(table.header):
+                words = f"cells: {len(cells)}, heads: {len(table.header)}; every row needs a cell for each head"
+                reader.fault("given", words, reader.tree.at(("given", at, "rows", row)))

@@ -102,7 +102,10 @@ def compile_text(text: str) -> Template:
     _check_length(text)
     tree = _parsed(text, lambda: _environment().parse(text))
     compiler = ExpressionCompiler()
-    write = _Writers(compiler).block(tree.body, 0)
+    try:
+        write = _Writers(compiler).block(tree.body, 0)
+    except TemplateFault as error:
+        raise _at_its_word(error, text) from error
     return Template(_placed(compiler.uses, text), write)
 
 
@@ -113,8 +116,18 @@ def compile_condition(text: str) -> Condition:
         raise TemplateFault("a condition is missing", 1)
     expression = _parsed(text, lambda: _read_expression(text))
     compiler = ExpressionCompiler()
-    evaluate = compiler.compile(expression)
+    try:
+        evaluate = compiler.compile(expression)
+    except TemplateFault as error:
+        raise _at_its_word(error, text) from error
     return Condition(_placed(compiler.uses, text), text, evaluate)
+
+
+def _at_its_word(error: TemplateFault, text: str) -> TemplateFault:
+    """The fault with the column of its word, as far as the line has it."""
+    lines = text.split("\n")
+    at = lines[min(error.line, len(lines)) - 1].find(error.word) if error.word else -1
+    return TemplateFault(error.message, error.line, max(at, 0) + 1, error.word, error.allowed)
 
 
 def _placed(uses: Sequence[Use], text: str) -> tuple[Use, ...]:
@@ -142,8 +155,17 @@ def _read_expression(text: str) -> nodes.Node:
     expression = parser.parse_expression()
     if not parser.stream.eos:
         token = parser.stream.current
-        raise TemplateSyntaxError(f"{token.value!r} is too much here", token.lineno)
+        raise TemplateSyntaxError(_too_much(str(token.value), text), token.lineno)
     return expression
+
+
+def _too_much(word: str, text: str) -> str:
+    if word == "=":
+        return "to compare, write == (two signs)"
+    unquoted = re.search(rf"[0-9]+{re.escape(word)}\w*", text) if word.isalnum() else None
+    if unquoted:
+        return f'text stands in quotes: "{unquoted[0]}"'
+    return f"{word!r} is too much here"
 
 
 def _parsed(text: str, parse: Callable[[], _T]) -> _T:
@@ -171,6 +193,7 @@ def _syntax_fault(text: str, error: TemplateSyntaxError) -> TemplateFault:
             return TemplateFault("this {% if %} has no {% endif %}", open_at[-1])
     plain = message.replace("end of print statement", "}}").replace("end of statement block", "%}")
     plain = plain.removesuffix(".").replace("end of template", "end of the text")
+    plain = re.sub(r"^[Ee]xpected token ('.*'), got ('.*')$", r"\1 is expected here, not \2", plain)
     return TemplateFault(plain[:1].lower() + plain[1:], error.lineno)
 
 

@@ -77,7 +77,8 @@ def electron_named(word: str, setting: Setting) -> Subshell | None:
         return Subshell.parse(word)
     except ContentError as error:
         drawn = [name for name, value in setting.bindings.items() if isinstance(value, Subshell)]
-        raise ContentError(f"{word!r} is neither a drawn electron nor a subshell", word, drawn) from error
+        allowed = [*drawn, "outermost"]
+        raise ContentError(f"{word!r} is neither a drawn electron nor a subshell", word, allowed) from error
 
 
 def text_named(word: str, setting: Setting) -> str:

@@ -137,7 +137,8 @@ def species_listed(words: Iterable[str], setting: Setting) -> tuple[Species, ...
             found += parse_range(word)
         except ContentError as error:
             drawn = [name for name, value in setting.bindings.items() if isinstance(value, Species)]
-            raise ContentError(error.message, word, drawn or error.allowed) from error
+            hint = "; a range is written `Na-Ar`" if len(word.split()) > 1 else ""
+            raise ContentError(error.message + hint, word, drawn or error.allowed) from error
     return tuple(found)
 
 

@@ -45,6 +45,19 @@ FAULTS = {
         (13, 11),
         "is not given in 'furlong'",
     ),
+    "a slip that leaves no such electron": (
+        (
+            "- calculate: effective nuclear charge",
+            "- correct: effective nuclear charge\n    electron: 4s\n    slip: d filled before next s",
+        ),
+        (14, 11),
+        "has no 4s electron, so the flawed working would be about another electron",
+    ),
+    "a name that no species has": (
+        (STORY, "keep:\n  - metal.blok == 'd'\n" + STORY),
+        (7, 11),
+        "did you mean 'block'?",
+    ),
     "a key given twice": (("draw:\n", "level: majors\ndraw:\n"), (3, 1), "already given on line 2"),
     "text where a list belongs": ((PARTS, "parts: all of them\n"), (8, 8), "a list is needed here"),
     "a list where text belongs": (("item: The evening tank", "item: [The, tank]"), (1, 7), "text is needed here"),
@@ -67,7 +80,7 @@ FAULTS = {
     "an open template": (("{{ metal.name }}", "{{ metal.name"), (7, 3), ""),
     "a template with a call": (("{{ metal.name }}", "{{ metal.name.upper() }}"), (7, 3), ""),
     "a template that reaches inside": (("{{ metal.name }}", "{{ metal.__class__ }}"), (7, 3), ""),
-    "an unknown filter": (("{{ metal.name }}", "{{ metal.name | shout }}"), (7, 3), "shout"),
+    "an unknown filter": (("{{ metal.name }}", "{{ metal.name | shout }}"), (7, 52), "shout"),
     "an endless template": (("{{ metal.name }}", "{% for a in b %}{% endfor %}"), (7, 3), ""),
     "chemistry that is none": (("dissolved", "`Vx3+` and dissolved"), (7, 27), "Vx"),
     "a formula that is none": (("dissolved", "$\\foo$ and dissolved"), (7, 27), "\\foo"),

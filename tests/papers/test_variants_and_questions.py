@@ -129,6 +129,29 @@ def test_the_story_prints_what_was_drawn():
     assert [prose_text(each.story) for each in questions(TANK)][2] == "A paper exercise about dissolved vanadium."
 
 
+def test_what_is_wrong_in_a_parts_own_wording_stands_in_it():
+    text = TANK + "    ask:\n      - Find it.\n      - |\n        Find it\n        for `Xq`.\n"
+    item = read(text)
+    with pytest.raises(FaultsFound) as caught:
+        question(enumerated(item, published()).variants[0], TERMS, 1)
+    assert [(fault.code, str(fault.source)) for fault in caught.value.faults] == [("text", "tank.yaml:17:14")]
+
+
+@pytest.mark.parametrize(
+    ("draw", "place", "words"),
+    [
+        ("{electron: metal, shell: outermost}", "tank.yaml:5:11", "did you mean 'electron of'?"),
+        ("{ion: metal, charge: 2+}", "tank.yaml:5:11", "did you mean 'ion of'?"),
+        ("{blck: d}", "tank.yaml:5:11", "did you mean 'block'?"),
+    ],
+)
+def test_a_draw_with_half_of_its_key_is_told_the_whole(draw, place, words):
+    """What rests on the draw is not complained about as well."""
+    ((code, where, said),) = faults(TANK.replace("{electron of: metal, shell: outermost}", draw))
+    assert (code, where) == ("unknown-key", place)
+    assert words in said
+
+
 def test_what_is_wrong_in_prose_stands_at_its_line_of_the_item():
     text = TANK.replace(
         "  A paper exercise about dissolved {{ metal.name }}.\n",
@@ -179,7 +202,11 @@ def test_tables_and_charts_are_templates():
         ("Of {{ metal.name }}", "Of {{ meta.name }}", ("undefined", "tank.yaml:14:20")),
         ("card about {{ metal.name }}", "card about {{ metal.nmae }}", ("template", "tank.yaml:19:35")),
         ('"{{ metal.z }}"]', '"{{ metal.z "]', ("template", "tank.yaml:17:26")),
-        ("For {{ metal.name }}", "For {{ metal.name | shout }}", ("template", "tank.yaml:25:13")),
+        ("[Zn, \"30\"]", "[Zn]", ("given", "tank.yaml:18:9")),
+        ("[Zn, \"30\"]", "[Zn, \"`Qq` {{ metal }}\"]", ("unsolvable", "tank.yaml:18:14")),
+        ("symbol }}\", Zn]", "symbol }}\", Vx]", ("unsolvable", "tank.yaml:21:32")),
+        ("[Na-Cl]", "Na to Cl", ("unsolvable", "tank.yaml:24:7")),
+        ("For {{ metal.name }}", "For {{ metal.name | shout }}", ("template", "tank.yaml:25:33")),
         ("Of {{ metal.name }}", "Of {{ metal.z > 3 }}", ("template", "tank.yaml:14:5")),
     ],
 )
@@ -253,6 +280,11 @@ def test_a_variable_called_rounding_is_the_authors_own():
         ("metal.name.size > 2", ("condition", "tank.yaml:7:16"), "text has nothing called 'size'"),
         ("metal.configuration.core == 'Ar'", ("condition", "tank.yaml:7:25"), "a configuration has nothing called"),
         ("meta.z > 3", ("undefined", "tank.yaml:7:5"), "'meta' is not drawn; did you mean 'metal'?"),
+        ("unpaired > 3", ("undefined", "tank.yaml:7:5"), "is written after its name: metal.unpaired"),
+        ("metal.unpaired = 3", ("condition", "tank.yaml:7:5"), "to compare, write == (two signs)"),
+        ("metal.outermost.label == 4s", ("condition", "tank.yaml:7:5"), 'text stands in quotes: "4s"'),
+        ("metal.z > 3 metal.z", ("condition", "tank.yaml:7:5"), "'metal' is too much here"),
+        ("metal.name | shout == 'a'", ("condition", "tank.yaml:7:18"), "no filter 'shout'"),
     ],
 )
 def test_what_a_drawn_value_does_not_have_is_found_at_reading(condition, expected, words):
@@ -288,6 +320,7 @@ def test_an_older_record_with_a_name_never_asked_for_is_read(condition):
         ("calculate: effective age", "tank.yaml:13:16"),
         ("calculate: screening constant\n    of: Vx", "tank.yaml:14:9"),
         ("calculate: screening constant\n    electron: 7s", "tank.yaml:14:15"),
+        ("calculate: screening constant\n    electron: outre", "tank.yaml:14:15"),
         ("correct: orbital energy\n    slip: self cuonted", "tank.yaml:14:11"),
         ("correct: screening constant\n    slip: '{{ slip }}'\n    electron: 4s\n    of: Ti", "tank.yaml:15:11"),
     ],

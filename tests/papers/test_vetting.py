@@ -5,6 +5,7 @@ from __future__ import annotations
 import pytest
 from papers_help import TANK, TERMS, read, write_item
 
+from authoring.faults import render_faults
 from authoring.papers.vet import Vetted, vetted, vetted_item, vetted_plan
 
 
@@ -82,7 +83,33 @@ def test_a_wording_that_says_nothing_about_rounding_is_weak(ask, codes):
     text = TANK + ENERGY + f"    ask:\n      - '{ask}'\n      - 'Find the energy to 3 figures.'\n"
     result = vet(text)
     assert sorted(findings(result)) == [(code, "weakness", 7) for code in codes]
-    assert {str(each.source) for each in result.findings} <= {"tank.yaml:15:9"}
+    places = {"no-rounding": {"tank.yaml:15:9"}, "single-braces": {"tank.yaml:15:29", "tank.yaml:15:40"}}
+    assert {str(each.source) for each in result.findings} == set().union(*(places[code] for code in codes))
+
+
+@pytest.mark.parametrize(
+    ("text", "columns"),
+    [
+        ("A paper exercise about {metal.name} in { outer }.", [26, 42]),
+        ("A paper exercise about {{metal.name}}, $Z_{metal}$, {steel}{% if metal.z > 3 %}x{% endif %}.", []),
+    ],
+)
+def test_a_drawn_value_in_single_braces_is_weak(text, columns):
+    result = vet(TANK.replace("A paper exercise about dissolved {{ metal.name }}.", text))
+    assert [str(each.source) for each in result.findings] == [f"tank.yaml:7:{column}" for column in columns]
+    assert {each.code for each in result.findings} <= {"single-braces"}
+
+
+def test_a_fault_of_every_variant_names_none():
+    (finding,) = vet(TANK + "  - calculate: effective age\n").findings
+    assert finding.message == "no quantity 'effective age'; did you mean 'effective nuclear charge'? (in every variant)"
+
+
+def test_faults_and_weaknesses_are_counted_apart():
+    found = vet(TANK + "  - calculate: effective age\n").findings
+    weak = vet(TANK + "    ask: Find {species} or {electron}.\n").findings
+    assert render_faults([*found, *weak]).splitlines()[-1] == "1 fault, 2 weaknesses"
+    assert render_faults(weak).splitlines()[-1] == "2 weaknesses"
 
 
 def test_rounding_need_not_be_said_where_nothing_is_rounded_or_the_default_says_it():
