@@ -34,6 +34,8 @@ RANK: dict[Finding, int] = {
 
 # Values worked on with intermediates of three figures stay within this of the exact one.
 EARLY = Decimal("0.005")
+# A small difference of two of them is off by more than a part of itself: by so many per cent of what is compared.
+EARLY_PERCENT = Decimal("0.2")
 # A sum of rounded terms may be off by this much; less is no mistake of anybody's.
 WORKED = Decimal("0.0005")
 GOOD: tuple[Finding, ...] = ("right", "key", "early")
@@ -319,6 +321,8 @@ def _early(right: Decimal, value: Decimal, target: Target) -> bool:
     """Whether a value is the right one worked on with rounded intermediates."""
     if quantity(target.quantity).rounding.places == 2 and not quantity(target.quantity).unit:
         return False  # S and Z_eff are exact: nothing is rounded on the way to them
+    if quantity(target.quantity).unit == "%":
+        return abs(value - right) <= EARLY_PERCENT
     return bool(right) and abs(value - right) <= abs(right) * EARLY
 
 

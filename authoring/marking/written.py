@@ -66,10 +66,22 @@ def _read(text: str, decimal: DecimalMark) -> Written:
     if (found := _quick_again(plain, text, decimal)) is not None:
         return replace(found, struck=struck) if struck else found
     about, rest = split_about(plain)
-    found = _read_plain(rest, decimal)
-    return replace(
-        found, text=text, about=about or found.about, words=kept.strip() if found.words else "", struck=struck
-    )
+    found = _about(about, _read_plain(rest, decimal))
+    return replace(found, text=text, words=kept.strip() if found.words else "", struck=struck)
+
+
+def _about(name: str, found: Written) -> Written:
+    """A line behind a name (`V 4s: …`): its statements are about that, up to the first that names something itself."""
+    if not name:
+        return found
+    if not found.earlier:
+        return replace(found, about=name)
+    statements = [*found.earlier, replace(found, earlier=())]
+    for at, each in enumerate(statements):
+        if each.about:
+            break
+        statements[at] = replace(each, about=name)
+    return replace(statements[-1], earlier=tuple(statements[:-1]))
 
 
 def _quick_again(plain: str, text: str, decimal: DecimalMark) -> Written | None:

@@ -356,3 +356,11 @@ def test_plain_forms_are_quick() -> None:
         read_line(line)
     # 20 µs a line on the machine that this was written on takes a third of this.
     assert (time.perf_counter() - start) / len(lines) < 60e-6
+
+
+def test_a_name_before_several_statements_holds_until_another_is_named() -> None:
+    """`V 4s: S = …; Z = …` is about V 4s throughout; in `F8+: …; E(F8+) = …; I = …` the I is not the ion's."""
+    both = read_line("3d: S = 12.60; Zeff = 8.40")
+    assert [each.about for each in (*both.earlier, both)] == ["3d", "3d"]
+    ion = read_line("F8+: 1s1; S = 0.00; E(F8+) = -1102.061; I = -1102.061 + 2059.630 = 957.57")
+    assert [each.about for each in (*ion.earlier, ion)] == ["F8+", "F8+", "F8+", ""]
