@@ -11,6 +11,7 @@ from authoring.marking.judgement import Judgement, Own
 from authoring.marking.recall import PaperToMark, QuestionToMark, RecalledSet
 from authoring.marking.sayings import Sayings
 from authoring.marking.scripts import Script, resolve_label
+from authoring.marking.written import read_line
 from authoring.tasks.solved import Solved
 
 # Judgements remembered before the memory is let go: some 100 MB at the most.
@@ -58,7 +59,17 @@ class Judge:
             return None, (Fault("script-unknown-paper", message, script.places.entry()),)
         paper = self.set.paper(code)
         answers, faults = _placed(script, paper)
-        return ScriptJudged(paper, self.paper(paper, answers), answers), faults
+        unread = self._unread(script, paper)
+        return ScriptJudged(paper, self.paper(paper, answers), answers), (*faults, *unread)
+
+    def _unread(self, script: Script, paper: PaperToMark) -> Iterator[Fault]:
+        """The lines that cannot be read, at their places: a person has to."""
+        for label, lines in script.answers.items():
+            for at, text in enumerate(lines):
+                found = read_line(text, self.set.policy.decimal)
+                if found.kind == "unreadable":
+                    message = f"paper {paper.code} {label}: {found.remark}; a person has to read it"
+                    yield Fault("script-unreadable", message, script.places.line(label, at), "weakness")
 
     def paper(self, paper: PaperToMark, answers: Mapping[str, tuple[str, ...]]) -> tuple[Judgement, ...]:
         """Every part of a paper; a part without an answer was not answered."""

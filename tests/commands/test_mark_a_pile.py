@@ -52,6 +52,7 @@ def folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
         wrong = screening.wrong[at % len(screening.wrong)].shown
         said = ["ok", f"S = {screening.answer.shown}", wrong, "7.77", "what it was, I do not know"][at % 5]
         entries.append(f"- paper: {paper.code}\n  1a: '{said}'\n  1b: ['Z* = 3.30']\n")
+    entries[9] = entries[9].replace("what it was, I do not know", "3.3 + = (")
     entries += [entries[3], entries[4].replace("7.77", "8.88").replace("I do", "we do")]
     entries += ["- paper: ZZZZZ\n  1a: 3\n", f"- paper: {made.papers[7].code}\n  4a: 3\n", "- paper: [x\n"]
     (home / "scripts.yaml").write_text("".join(entries), encoding="utf-8")
@@ -95,6 +96,7 @@ def test_a_pile_is_judged_and_what_is_wrong_with_it_said(folder: Path) -> None:
     assert "stands in this file twice; it says the same; the first one counts" in ran.output
     assert "stands in this file twice; it differs in 1a; the first one counts" in ran.output
     assert "has no part '4a'" in ran.output
+    assert f"scripts.yaml:{9 * 3 + 2}:7: weakness: paper " in ran.output
     ran, _ = marked(folder, "--json")
     rows = json.loads(ran.output[: ran.output.rindex("]") + 1].partition("\n]\n")[0] + "\n]")
     assert len(rows) == 2 * PAPERS

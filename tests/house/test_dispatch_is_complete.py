@@ -128,6 +128,7 @@ TRIGGERS: dict[str, tuple[str, str | bytes]] = {
     "script-candidate": ("pile", "- paper: CODE\n  candidate: s2\n  1a: ok\n"),
     "script-twice": ("pile", "- paper: CODE\n  1a: ok\n- paper: CODE\n  1a: 3.30\n"),
     "script-unknown-paper": ("pile", "- paper: ZZZZZ\n  1a: ok\n"),
+    "script-unreadable": ("pile", "- paper: CODE\n  1a:\n    - S = 3.30\n    - = = (\n"),
     "script-unknown-part": ("pile", "- paper: CODE\n  9z: ok\n"),
     "script-paper": ("scripts.yaml", "- 1a: 3.30\n"),
     "scripts-list": ("scripts.yaml", "paper: ABCDE\n"),
