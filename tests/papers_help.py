@@ -5,15 +5,17 @@ from __future__ import annotations
 from decimal import Decimal
 from pathlib import Path
 
+from authoring.papers.assemble import PaperSet, assembled
 from authoring.papers.pools import pool
 from authoring.papers.questions import Question, Terms, question
+from authoring.papers.record_file import RECORD, written
 from authoring.papers.variants import Pool, enumerated
 from authoring.papers.views import value_text
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import shipped
 from authoring.specs.draws import draw_model
 from authoring.specs.item import Item, item_from
-from authoring.specs.plan import Plan, plan_from
+from authoring.specs.plan import Plan, plan_from, read_plan
 from authoring.specs.yaml_tree import parse_tree
 
 TERMS = Terms(published(), shipped(), new=True)
@@ -72,3 +74,13 @@ def write_item(folder: Path, text: str, name: str = "tank") -> Path:
     path = folder / f"{name}.yaml"
     path.write_text(text, encoding="utf-8")
     return path
+
+
+def write_set(folder: Path, item: str, copies: int) -> PaperSet:
+    """A set of an item's papers in a folder: its files and its record, nothing printed."""
+    (folder / "tank.yaml").write_text(item, encoding="utf-8")
+    (folder / "plan.yaml").write_text("plan: Tank\nitems: [tank.yaml]\n", encoding="utf-8")
+    plan = read_plan(folder / "plan.yaml")
+    made = assembled(plan, Terms(plan.practice, plan.slips), "seed", [None] * copies, allow_repeats=True)
+    (folder / RECORD).write_text(written(made), encoding="utf-8")
+    return made

@@ -8,16 +8,13 @@ from pathlib import Path
 
 import pytest
 from click.testing import CliRunner, Result
+from papers_help import write_set
 
 from authoring.cli import shieldwright
 from authoring.commands import mark_file
 from authoring.marking import cores
 from authoring.marking.ledger import Ledger
 from authoring.marking.recall import recalled
-from authoring.papers.assemble import assembled
-from authoring.papers.questions import Terms
-from authoring.papers.record_file import RECORD, written
-from authoring.specs.plan import read_plan
 
 ITEM = """\
 item: The evening tank
@@ -41,11 +38,7 @@ PAPERS = 60
 def folder(tmp_path_factory: pytest.TempPathFactory) -> Path:
     """A set of sixty papers and a pile of their scripts: right, slipped, doubled, unknown, misplaced, unreadable."""
     home = tmp_path_factory.mktemp("pile")
-    (home / "tank.yaml").write_text(ITEM, encoding="utf-8")
-    (home / "plan.yaml").write_text("plan: Pile\nitems: [tank.yaml]\n", encoding="utf-8")
-    plan = read_plan(home / "plan.yaml")
-    made = assembled(plan, Terms(plan.practice, plan.slips), "pile", [None] * PAPERS)
-    (home / RECORD).write_text(written(made), encoding="utf-8")
+    made = write_set(home, ITEM, PAPERS)
     entries = []
     for at, paper in enumerate(made.papers):
         screening = paper.questions[0].parts[0].solved

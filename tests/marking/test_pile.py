@@ -6,6 +6,7 @@ import random
 
 import pytest
 from marking_help import Candidate, styled
+from papers_help import write_set
 
 from authoring.faults import ContentError
 from authoring.marking import explaining, explaining_statements
@@ -13,12 +14,8 @@ from authoring.marking.judge import Policy
 from authoring.marking.pile import Judge
 from authoring.marking.recall import PaperToMark, RecalledSet, recalled
 from authoring.marking.sayings import Sayings
-from authoring.papers.assemble import assembled
-from authoring.papers.questions import Terms
-from authoring.papers.record_file import RECORD, written
 from authoring.shielding.practice import published
 from authoring.slips.catalogue import applied, shipped
-from authoring.specs.plan import read_plan
 
 ITEM = """\
 item: The evening tank
@@ -45,11 +42,7 @@ parts:
 def of(tmp_path_factory: pytest.TempPathFactory) -> RecalledSet:
     """A set of nine papers."""
     folder = tmp_path_factory.mktemp("pile")
-    (folder / "tank.yaml").write_text(ITEM, encoding="utf-8")
-    (folder / "plan.yaml").write_text("plan: Pile\nitems: [tank.yaml]\n", encoding="utf-8")
-    plan = read_plan(folder / "plan.yaml")
-    made = assembled(plan, Terms(plan.practice, plan.slips), "pile", [None] * 9)
-    (folder / RECORD).write_text(written(made), encoding="utf-8")
+    write_set(folder, ITEM, 9)
     return recalled(folder)
 
 
