@@ -6,7 +6,7 @@ import functools
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any, Literal
+from typing import Any, Literal, TypeAlias
 
 import click
 
@@ -14,15 +14,17 @@ from authoring.commands.common import print_json, progress_bar
 from authoring.faults import Fault, render_faults
 from authoring.marking.cores import cores, seldom_collected, spread
 from authoring.marking.desk import judgement_words
+from authoring.marking.judgement import Judgement
 from authoring.marking.ledger import Ledger
-from authoring.marking.ledger_entries import Entry, judgement_entry, script_entry
-from authoring.marking.ledger_mark import Mark
+from authoring.marking.ledger_entries import Entry, entry_of, judgement_text, script_entry
 from authoring.marking.pile import Firsts, Judge, ScriptJudged
 from authoring.marking.recall import RecalledSet, recalled
 from authoring.marking.scripts import Script, read_scripts
 
 CAUTION = "Proposed marks are for a person to confirm; your institution's assessment and data-protection rules apply."
 Form = Literal["open", "full", "json"]
+# Parts, parts that need a person, marks proposed, marks there are.
+Marks: TypeAlias = "tuple[int, int, int, int]"
 
 # Scripts judged at a time: what is kept of one heap is on the disk before the next is asked for.
 HEAP = 250
@@ -52,15 +54,12 @@ def mark_file(of: RecalledSet, folder: Path, path: Path, marker: str, form: Form
 
 @dataclass(frozen=True, slots=True)
 class Outcome:
-    """What is told of one script: for the ledger, for the reader, and for the counts.
-
-    `marks`: parts, parts that need a person, marks proposed, marks there are.
-    """
+    """What is told of one script: for the ledger, for the reader, and for the counts."""
 
     faults: tuple[Fault, ...]
     entries: tuple[Entry, ...] = ()
     shown: Any = ()
-    marks: tuple[int, int, int, int] = (0, 0, 0, 0)
+    marks: Marks = (0, 0, 0, 0)
 
     @property
     def known(self) -> bool:
@@ -146,6 +145,7 @@ class _HeapJudge:
         self.scripts = material.scripts
         self.judge = Judge(material.of)
         self.form = form
+        self._kept: dict[int, _Told] = {}
 
     def __call__(self, heap: tuple[int, int]) -> list[Outcome]:
         return [self.outcome(script) for script in self.scripts[slice(*heap)]]
@@ -156,32 +156,45 @@ class _HeapJudge:
         if judged is None:
             return Outcome(faults)
         code, candidate = judged.paper.code, judged.paper.candidate
+        told = [self._told(each) for each in judged.judgements]
         entries = [script_entry(code, judged.answers, candidate)]
-        entries += [judgement_entry(Mark(code, each, candidate)) for each in judged.judgements]
-        return Outcome(faults, tuple(entries), self._shown(judged), _marks(judged))
+        entries += [entry_of(each.text, code, each.of.label, candidate) for each in told]
+        marks = (len(told), sum([t.open for t in told]), sum([t.awarded for t in told]), sum([t.out_of for t in told]))
+        return Outcome(faults, tuple(entries), self._shown(judged, told, marks), marks)
 
-    def _shown(self, judged: ScriptJudged) -> Any:
+    def _told(self, judgement: Judgement) -> _Told:
+        told = self._kept.get(id(judgement))
+        if told is None or told.of is not judgement:
+            told = self._kept[id(judgement)] = _Told.about(judgement)
+        return told
+
+    def _shown(self, judged: ScriptJudged, told: Sequence[_Told], marks: Marks) -> Any:
         if self.form == "json":
             return [each.data(judged.paper.code, judged.paper.candidate or None) for each in judged.judgements]
-        return _words(judged, self.form == "full") if self.form == "full" or judged.needs_person else ""
+        full = self.form == "full"
+        return _words(judged, [each for each in told if full or each.open], marks) if full or marks[1] else ""
 
 
-def _marks(judged: ScriptJudged) -> tuple[int, int, int, int]:
-    several = judged.judgements
-    return (
-        len(several),
-        sum(each.needs_person for each in several),
-        sum(each.awarded for each in several),
-        sum(each.out_of for each in several),
-    )
+@dataclass(frozen=True, slots=True)
+class _Told:
+    """What is told of a judgement, worked out once for all who wrote the same."""
+
+    of: Judgement
+    text: str
+    words: str
+    open: bool
+    awarded: int
+    out_of: int
+
+    @staticmethod
+    def about(of: Judgement) -> _Told:
+        return _Told(of, judgement_text(of), judgement_words(of), of.needs_person, of.awarded, of.out_of)
 
 
-def _words(judged: ScriptJudged, every: bool) -> str:
-    _, _, awarded, out_of = _marks(judged)
+def _words(judged: ScriptJudged, told: Sequence[_Told], marks: Marks) -> str:
+    _, _, awarded, out_of = marks
     lines = [f"{judged.paper.code}  {judged.paper.candidate}".rstrip() + f"  {awarded} of {out_of} proposed"]
-    for judgement in judged.judgements:
-        if every or judgement.needs_person:
-            written = " | ".join(judged.answers.get(judgement.label, ())) or "nothing written"
-            lines.append(f"  {judgement.label}  {written[:70]}")
-            lines.append(judgement_words(judgement))
+    for each in told:
+        written = " | ".join(judged.answers.get(each.of.label, ())) or "nothing written"
+        lines += [f"  {each.of.label}  {written[:70]}", each.words]
     return "\n".join(lines)

@@ -2,10 +2,9 @@
 
 from __future__ import annotations
 
-import functools
 import json
 from collections.abc import Iterable, Mapping
-from typing import Any, TypeAlias
+from typing import TypeAlias
 
 from authoring.faults import ContentError
 from authoring.marking.judgement import Judgement
@@ -15,6 +14,7 @@ from authoring.marking.ledger_mark import Mark, judgement_data
 # (kind, paper, part, payload): a plain tuple, since a pile hands over tens of thousands of them between processes.
 Entry: TypeAlias = "tuple[EventKind, str, str, str]"
 
+_NOBODYS = ',"candidate":""}'
 _encode = json.JSONEncoder(ensure_ascii=False, separators=(",", ":")).encode
 
 
@@ -26,24 +26,32 @@ def script_entry(paper: str, answers: Mapping[str, Iterable[str]], candidate: st
 
 def judgement_entry(mark: Mark) -> Entry:
     """A judgement."""
-    return "judgement", mark.paper, mark.part, _kept(mark.paper, _with(mark, {}))
+    return entry_of(judgement_text(mark.judgement), mark.paper, mark.part, mark.candidate)
+
+
+def judgement_text(judged: Judgement) -> str:
+    """What a judgement says, as text: the same for all who wrote the same."""
+    return _encode(judgement_data(judged))
+
+
+def entry_of(text: str, paper: str, part: str, candidate: str) -> Entry:
+    """The entry of a judgement that is text already (`judgement_text`)."""
+    return "judgement", paper, part, _kept(paper, _with(text, candidate, {}))
 
 
 def reasoned_entry(kind: EventKind, mark: Mark, reason: str, by: str = "") -> Entry:
     """A mark that a person gives, with the reason; `by` says who, where the mark is somebody else's."""
     if not reason.strip():
         raise ContentError("a changed mark needs its reason")
-    return kind, mark.paper, mark.part, _kept(mark.paper, _with(mark, {"reason": reason.strip(), "by": by}))
+    text = _with(judgement_text(mark.judgement), mark.candidate, {"reason": reason.strip(), "by": by})
+    return kind, mark.paper, mark.part, _kept(mark.paper, text)
 
 
-def _with(mark: Mark, more: Mapping[str, Any]) -> str:
-    """The payload of a mark: what its judgement says, made into text once for all who wrote the same, then the rest."""
-    return f"{_judgement_text(mark.judgement)[:-1]},{_encode({'candidate': mark.candidate, **more})[1:]}"
-
-
-@functools.lru_cache(maxsize=4096)
-def _judgement_text(judged: Judgement) -> str:
-    return _encode(judgement_data(judged))
+def _with(text: str, candidate: str, more: Mapping[str, str]) -> str:
+    """The payload of a mark: its judgement, then whose it is and the rest."""
+    if not candidate and not more:
+        return text[:-1] + _NOBODYS
+    return f"{text[:-1]},{_encode({'candidate': candidate, **more})[1:]}"
 
 
 def _kept(paper: str, text: str) -> str:

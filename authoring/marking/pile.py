@@ -27,11 +27,6 @@ class ScriptJudged:
     judgements: tuple[Judgement, ...]
     answers: Mapping[str, tuple[str, ...]]
 
-    @property
-    def needs_person(self) -> bool:
-        """Whether a person must look at a part of it."""
-        return any(judgement.needs_person for judgement in self.judgements)
-
 
 @dataclass(slots=True)
 class _Node:
