@@ -14,7 +14,7 @@ from authoring.papers.assemble import PaperSet, assembled
 from authoring.papers.chance import checked_seed, new_seed
 from authoring.papers.folder import checked_target, whole_folder
 from authoring.papers.questions import Terms
-from authoring.papers.record_file import RECORD, read_drawn, used_variants, written
+from authoring.papers.record_file import RECORD, pieces, read_drawn, used_variants
 from authoring.press.publish import Published, publish
 from authoring.specs.plan import Plan, read_plan
 from authoring.specs.roster import Candidate, read_roster
@@ -62,7 +62,8 @@ def command(
     read = read_plan(located(plan, "plans"))
     made = _assembled(read, candidates, checked_seed(seed) if seed is not None else new_seed(), allow_repeats)
     with whole_folder(target, replace) as scratch:
-        scratch.joinpath(RECORD).write_text(written(made), encoding="utf-8")
+        with scratch.joinpath(RECORD).open("w", encoding="utf-8") as file:
+            file.writelines(pieces(made))
         scratch.joinpath("scripts.yaml").write_text(write_blank_form(*form_of(made)), encoding="utf-8")
         with progress_bar("printing") as progress:
             published = publish(made, scratch, split=split, progress=progress, time_limit=time_limit)

@@ -7,7 +7,7 @@ rest is a record too, a twentieth in size.
 from __future__ import annotations
 
 import json
-from collections.abc import Mapping
+from collections.abc import Iterator, Mapping
 from pathlib import Path
 from typing import Any
 
@@ -24,11 +24,22 @@ _dump = json.JSONEncoder(ensure_ascii=False).encode
 
 def written(paper_set: PaperSet) -> str:
     """The record as JSON text: the same set gives the same bytes."""
+    return "".join(pieces(paper_set))
+
+
+def pieces(paper_set: PaperSet) -> Iterator[str]:
+    """The text of the record, paper by paper: that of ten thousand papers is better not had at once."""
     data = record(paper_set)
     lines = _Lines()
-    values = {name: _dump(value) for name, value in data.items() if name != "papers"}
-    values["papers"] = "[\n" + ",\n".join(map(lines.paper, data["papers"])) + "\n]"
-    return "{\n" + ",\n".join(f"{_dump(name)}: {values[name]}" for name in data) + "\n}\n"
+    for at, (name, value) in enumerate(data.items()):
+        yield ("{\n" if not at else ",\n") + _dump(name) + ": "
+        if name != "papers":
+            yield _dump(value)
+            continue
+        for number, paper in enumerate(value):
+            yield ("[\n" if not number else ",\n") + lines.paper(paper)
+        yield "\n]"
+    yield "\n}\n"
 
 
 class _Lines:
