@@ -16,7 +16,7 @@ from authoring.marking.explaining import Terms, explained
 from authoring.marking.forms import DecimalMark, Written
 from authoring.marking.judgement import Certainty, Judgement, Own, PointJudged, least
 from authoring.marking.line_states import LineState, Working
-from authoring.marking.tidy import lowered, tidied
+from authoring.marking.tidy import lowered, tidied, without_struck
 from authoring.marking.trace import way_to
 from authoring.marking.written import read_line
 from authoring.shielding.quantity import quantities
@@ -56,6 +56,7 @@ def judged(label: str, solved: Solved, texts: Texts, own: Own, terms: Terms, pol
     lines = [read_line(text, policy.decimal) for text in texts]
     lines = [written for written in lines if written.kind != "blank"]
     remarks = tuple(f"crossed out: {piece}" for written in lines for piece in written.struck)
+    lines = [_without_struck(written) if written.struck else written for written in lines]
     if not lines:
         return _all(label, solved, 0, "not answered", remarks)
     if any(written.kind == "ok" for written in lines):
@@ -63,11 +64,22 @@ def judged(label: str, solved: Solved, texts: Texts, own: Own, terms: Terms, pol
         return _all(label, solved, 1, "exactly as the key", remarks)
     if solved.task == "explain":
         return _explained_in_words(label, solved, remarks)
-    if solved.answer.kind == "table":
-        return _table(label, solved, lines, own, terms, policy, remarks)
-    if solved.answer.kind == "correction":
-        return _correction(label, solved, lines, own, terms, policy, remarks)
-    return _worked(label, solved, lines, own, terms, policy, remarks)
+    judge = {"table": _table, "correction": _correction}.get(solved.answer.kind, _worked)
+    found = judge(label, solved, lines, own, terms, policy, remarks)
+    if any(written.kind == "unreadable" for written in lines):
+        return _left_to_person(found, "a line that could not be read may say it")
+    return found
+
+
+def _without_struck(written: Written) -> Written:
+    """What is crossed out is no part of a line's words either."""
+    return replace(written, text=without_struck(written.text)[0])
+
+
+def _left_to_person(found: Judgement, why: str) -> Judgement:
+    """A judgement whose lost points a person has to look at."""
+    points = tuple(point if point.awarded else replace(point, reason=why, open=True) for point in found.points)
+    return replace(found, points=points, certainty="unexplained") if points != found.points else found
 
 
 def best_judged(
@@ -120,7 +132,10 @@ def _worked(
         choice = _choice(solved, working, lines, terms)
     any_words = any(written.words for written in lines)
     points, certainty = awarded(working, choice, policy.bare_values, any_words)
-    return _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+    found = _judgement(label, working.states, choice, points, certainty, (*remarks, *working.remarks))
+    if working_shows(working) or choice is not None:
+        return found
+    return _left_to_person(found, "what is written is about no line of the key")
 
 
 def _imply(working: Working, as_key: set[int], terms: Terms) -> None:

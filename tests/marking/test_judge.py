@@ -136,6 +136,30 @@ def test_what_nothing_explains_is_left_to_a_person() -> None:
 RANK = "- rank: effective nuclear charge\n  among: [Na, Mg, Al]\n  electron: outermost\n  marks: 4\n"
 
 
+def test_what_is_about_nothing_that_was_asked_is_left_to_a_person() -> None:
+    """A line that cannot be read, or a statement of something else, may be meant as the answer."""
+    part = solved("- calculate: unpaired electrons\n  of: Ti3+\n")
+    for line in ("= = (", "[Ar] 3d5", "I cannot say"):
+        found = judge(part, line)
+        assert (found.awarded, found.certainty, found.needs_person) == (0, "unexplained", True), line
+        assert any(point.open for point in found.points), line
+    assert judge(part, "[Ar] 3d1", "1").awarded == part.marks
+    # Nothing is lost for a line that cannot be read beside an answer that can.
+    found = judge(solved(S_OF_V), "= = (", "19.70")
+    assert (found.awarded, found.certainty) == (3, "certain")
+
+
+def test_what_is_crossed_out_says_nothing() -> None:
+    """Neither a negation nor the number of a line stands in what was crossed out."""
+    decide = solved("- decide: first electron lost\n  of: V\n  marks: 2\n")
+    assert judge(decide, "~~not 3d~~ 4s").points[0].awarded == 1
+    assert judge(decide, "not 3d 4s").points[0].awarded == 0
+    correct = solved("- correct: effective nuclear charge\n  of: V\n  electron: 4s\n  slip: self counted\n  marks: 3\n")
+    line = correct.answer.value[0]
+    assert judge(correct, f"~~{line}~~ 3.30").points[0].awarded == 0
+    assert judge(correct, f"~~{line - 1}~~ {line}; 3.30").points[0].awarded == 1
+
+
 def test_an_order_follows_the_candidates_own_values() -> None:
     part = solved(RANK)
     assert part.answer.shown == "Na < Mg < Al"
