@@ -17,7 +17,7 @@ from authoring.marking.desk import judgement_words
 from authoring.marking.judgement import Judgement
 from authoring.marking.ledger import Ledger
 from authoring.marking.ledger_entries import Entry, entry_of, judgement_text, script_entry
-from authoring.marking.pile import Firsts, Judge, ScriptJudged
+from authoring.marking.pile import MOST_REMEMBERED, Firsts, Judge, ScriptJudged
 from authoring.marking.recall import RecalledSet, recalled
 from authoring.marking.scripts import Script, read_scripts
 
@@ -43,7 +43,10 @@ def mark_file(of: RecalledSet, folder: Path, path: Path, marker: str, form: Form
         total = _Total(Firsts(of), form)
         with progress_bar("marking") as progress:
             for (start, end), outcomes in zip(heaps, judged, strict=True):
-                ledger.add(total.take(read.scripts[start:end], outcomes), marker)
+                kept = total.take(read.scripts[start:end], outcomes)
+                ledger.add([entry for outcome in kept for entry in outcome.entries], marker)
+                # What is told is on the disk.
+                total.show(kept)
                 progress(end, len(read.scripts))
     total.close()
     faults = (*read.faults, *total.faults)
@@ -68,7 +71,7 @@ class Outcome:
 
 
 class _Total:
-    """The outcomes of a pile, in order: counted, and printed as they come."""
+    """The outcomes of a pile, in order: counted, and printed when they are kept."""
 
     def __init__(self, firsts: Firsts, form: Form) -> None:
         self.firsts = firsts
@@ -78,26 +81,27 @@ class _Total:
         self.scripts = 0
         self.marks = (0, 0, 0, 0)
 
-    def take(self, scripts: Sequence[Script], outcomes: Sequence[Outcome]) -> list[Entry]:
-        """Take some scripts' outcomes; what the ledger is to keep of them."""
-        kept: list[Entry] = []
+    def take(self, scripts: Sequence[Script], outcomes: Sequence[Outcome]) -> list[Outcome]:
+        """Count some scripts' outcomes; those that the ledger is to keep."""
+        kept: list[Outcome] = []
         for script, outcome in zip(scripts, outcomes, strict=True):
             self.faults += outcome.faults
             again = self.firsts.again(script) if outcome.known else None
             if again is not None:
                 self.faults.append(again)
             elif outcome.known:
-                kept += outcome.entries
+                kept.append(outcome)
                 self.scripts += 1
                 self.marks = tuple(map(sum, zip(self.marks, outcome.marks, strict=True)))  # type: ignore[assignment]
-                self._show(outcome.shown)
         return kept
 
-    def _show(self, shown: Any) -> None:
-        if self.form == "json":
-            self.rows += shown
-        elif shown:
-            click.echo(shown)
+    def show(self, outcomes: Sequence[Outcome]) -> None:
+        """Print what is to be told of outcomes, or gather their rows."""
+        for outcome in outcomes:
+            if self.form == "json":
+                self.rows += outcome.shown
+            elif outcome.shown:
+                click.echo(outcome.shown)
 
     def close(self) -> None:
         """The last lines."""
@@ -165,6 +169,8 @@ class _HeapJudge:
     def _told(self, judgement: Judgement) -> _Told:
         told = self._kept.get(id(judgement))
         if told is None or told.of is not judgement:
+            if len(self._kept) > MOST_REMEMBERED:
+                self._kept.clear()
             told = self._kept[id(judgement)] = _Told.about(judgement)
         return told
 
