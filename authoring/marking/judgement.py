@@ -94,10 +94,6 @@ class Own:
         self.values.pop(target, None)
         self.off.discard(target)
 
-    def deviations(self) -> tuple[tuple[Target, Value], ...]:
-        """The values that are not the key's: with the key they say all about the state."""
-        return tuple((target, self.values[target]) for target in self.values if target in self.off)
-
     def copy(self) -> Own:
         """An independent copy."""
         return Own(dict(self.values), set(self.off))
